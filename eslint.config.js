@@ -31,20 +31,46 @@ export default typescript.config(
   {
     files: ['shared/**/*.ts'],
     rules: noReach([
-      { group: ['vue', 'vue-*', 'pinia', 'quasar', 'express', 'drizzle-orm*', 'mysql2*', 'node:*', 'fs', 'path', 'crypto'], message: 'shared/ is pure: no platform, no I/O.' },
+      {
+        group: [
+          'vue',
+          'vue-*',
+          'pinia',
+          'quasar',
+          'express',
+          'drizzle-orm*',
+          'mysql2*',
+          'node:*',
+          'fs',
+          'path',
+          'crypto',
+        ],
+        message: 'shared/ is pure: no platform, no I/O.',
+      },
       { group: ['**/src-server/**', '**/src/**'], message: 'shared/ never reaches back.' },
     ]),
   },
   {
     files: ['shared/{quantities,preferred-values,numerics,circuit,formula,analysis,sizing}/**/*.ts'],
     rules: noReach([
-      { group: ['zod', 'vue', 'vue-*', 'pinia', 'quasar', 'express', 'node:*', 'drizzle-orm*', 'mysql2*'], message: 'The engine knows neither zod nor a platform.' },
-      { group: ['**/src-server/**', '**/src/**', '**/contracts/**', '**/stage/**', '**/page-source/**'], message: 'The engine never reaches back.' },
+      {
+        group: ['zod', 'vue', 'vue-*', 'pinia', 'quasar', 'express', 'node:*', 'drizzle-orm*', 'mysql2*'],
+        message: 'The engine knows neither zod nor a platform.',
+      },
+      {
+        group: ['**/src-server/**', '**/src/**', '**/contracts/**', '**/stage/**', '**/page-source/**'],
+        message: 'The engine never reaches back.',
+      },
     ]),
   },
   {
     files: ['src/**/*.{ts,vue}'],
-    rules: noReach([{ group: ['**/src-server/**', 'express', 'mysql2*', 'drizzle-orm*'], message: 'The client never reaches across.' }]),
+    rules: noReach([
+      {
+        group: ['**/src-server/**', 'express', 'mysql2*', 'drizzle-orm*'],
+        message: 'The client never reaches across.',
+      },
+    ]),
   },
   {
     files: ['src-server/**/*.ts'],
