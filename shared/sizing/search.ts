@@ -122,6 +122,7 @@ function* neighbours(
   problem: SizingProblem,
   picks: number[],
   ideal: Map<number, number>,
+  env: Float64Array,
 ): Generator<Map<number, number>> {
   const each = problem.steps.length <= 2 ? 2 : 1
   const choices = problem.steps.map((step) =>
