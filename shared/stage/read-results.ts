@@ -1,5 +1,5 @@
 import type { CalculatorSource, ResultEntry } from '../contracts/calculator'
-import { compileComplexFormula } from '../formula/compile'
+import { compileComplexFormula } from '../formula/compile-complex'
 import { parseFormula } from '../formula/parse'
 import { readPercent } from '../quantities/read'
 import { readFigure } from './figure'

@@ -1,0 +1,25 @@
+import type { Unit } from '../quantities/unit'
+import type { FunctionName, OpampDatum } from './vocabulary'
+
+export type ArithmeticOperator = '+' | '-' | '*' | '/' | '^'
+export type ComparisonOperator = '<' | '<=' | '>' | '>=' | '==' | '!='
+export type LogicOperator = 'and' | 'or'
+
+/** A formula as a tree; columns from 1. */
+export type Tree =
+  /** A literal: value in SI, unit as written; `prefixed` without a unit fits any dimension. */
+  | { type: 'number'; value: number; unit: Unit | null; prefixed: boolean; text: string; column: number }
+  | { type: 'name'; name: string; column: number }
+  | { type: 'opamp'; datum: OpampDatum; ref: string; column: number }
+  | { type: 'call'; name: FunctionName; args: Tree[]; column: number }
+  | { type: 'arithmetic'; operator: ArithmeticOperator; left: Tree; right: Tree }
+  | { type: 'comparison'; operator: ComparisonOperator; left: Tree; right: Tree }
+  | { type: 'logic'; operator: LogicOperator; left: Tree; right: Tree }
+  | { type: 'not'; arg: Tree }
+  | { type: 'minus'; arg: Tree }
+
+/** First column that a tree covers. */
+export function columnOf(tree: Tree): number {
+  if ('column' in tree) return tree.column
+  return columnOf('left' in tree ? tree.left : tree.arg)
+}
