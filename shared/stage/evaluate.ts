@@ -136,7 +136,8 @@ function infeasibleTargets(stage: Stage, asked: StageAsked, sizing: SizingOutcom
     const mine = own?.requirements.find((one) => one.holds === requirement.holds)
     if (!own || !mine) return []
     const unit = stage.results.find((one) => one.name === mine.target)?.unit ?? ''
-    const words = nearest === undefined ? {} : { nearest: formatQuantity(nearest, unit as Unit) }
+    const words: Record<string, string> =
+      nearest === undefined ? {} : { nearest: formatQuantity(nearest, unit as Unit) }
     return [
       {
         part: own.part,

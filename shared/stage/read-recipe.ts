@@ -67,7 +67,7 @@ const OPAMP_DATA = /\b(A0|GBW|SR|Vos|Ib|en|in|Rout|Cin)\s*\(\s*U[A-Za-z0-9_]*\s*
 
 /** Reads `limits`. One that needs op-amp data is kept, and applies once an op-amp is chosen. */
 export function readLimits(context: ReadingContext, source: CalculatorSource): StageLimit[] {
-  return source.limits.flatMap((limit, k) => {
+  return source.limits.flatMap((limit, k): StageLimit[] => {
     const path = ['limits', k, 'when']
     if (OPAMP_DATA.test(limit.when)) return [{ level: limit.level, when: limit.when, say: limit.say, applies: null }]
     const read = context.condition(path, limit.when)
