@@ -44,7 +44,8 @@ async function once<T>(pool: Pool, work: (tx: Transaction) => Promise<T>): Promi
   const lease = await pool.acquire()
   try {
     await lease.query('START TRANSACTION')
-    const value = await insideTransaction.run(true, () => work(queriesOver(lease)))
+    // Awaited within: a statement of the query builder starts when it is awaited.
+    const value = await insideTransaction.run(true, async () => await work(queriesOver(lease)))
     await lease.query('COMMIT').catch((error: unknown) => {
       if (!isConnectionLost(error)) throw error
       throw new ProblemError(
