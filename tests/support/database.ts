@@ -50,7 +50,7 @@ export async function throwAwayServer(options: string[] = []): Promise<ThrowAway
       'sh',
       [
         '-c',
-        '"$@" >/dev/null 2>&1 & echo $!; (cat >/dev/null; kill -9 $!) & wait $!',
+        'exec 3<&0; "$@" >/dev/null 2>&1 3<&- & pid=$!; echo $pid; (cat <&3 >/dev/null; kill -9 $pid) & watcher=$!; wait $pid; kill $watcher',
         'sh',
         'mariadbd',
         '--no-defaults',
