@@ -159,7 +159,7 @@ export function inputImpedance(
     const [re, im] = [currents.re[k]!, currents.im[k]!]
     const size = re * re + im * im
     currents.re[k] = size === 0 ? Infinity : re / size
-    currents.im[k] = size === 0 ? 0 : -im / size
+    currents.im[k] = size === 0 ? 0 : 0 - im / size
   }
   return currents
 }

@@ -4,7 +4,10 @@ import { compareSets, levelAndSpread } from './rank'
 import type { SizingOutcome, SizingProblem, Step } from './recipe'
 
 /** How many sets of free picks are followed at most; the nearest to their start come first. */
-const PICKS_MOST = 1200
+const PICKS_MOST = 2400
+/** Values of one free pick that are followed when another is free too; a fine series has no need of all of them. */
+const VALUES_MOST = 60
+const FINE_VALUES_MOST = 24
 const RUNNERS_UP = 5
 const ONE_SIDED_CHOICES = 3
 
@@ -103,10 +106,19 @@ function followRecipe(steps: Step[], env: Float64Array, branch: number) {
   return { failures, ideal }
 }
 
+/** Stock values of a free pick: all when it is alone, else the nearest to its start, few of a resistor's fine series. */
+function candidates(stock: number[], start: number, picks: number): number[] {
+  if (picks === 1 || !(start > 0)) return stock
+  const perDecade = stock.length / Math.max(1, Math.log10(stock.at(-1)! / stock[0]!))
+  const most = perDecade > 30 ? FINE_VALUES_MOST : VALUES_MOST
+  return [...stock].sort((a, b) => distance(a, start) - distance(b, start)).slice(0, most)
+}
+
 /** All combinations of stock values for the free picks, nearest to their start first. */
 function picksInOrder(problem: SizingProblem, starts: number[]): number[][] {
   const combinations = problem.free.reduce<number[][]>(
-    (all, pick) => all.flatMap((picks) => pick.stock.map((value) => [...picks, value])),
+    (all, pick, k) =>
+      all.flatMap((picks) => candidates(pick.stock, starts[k]!, problem.free.length).map((value) => [...picks, value])),
     [[]],
   )
   const far = (picks: number[]) => picks.reduce((sum, value, k) => sum + distance(value, starts[k]!), 0)

@@ -86,7 +86,7 @@ export class CircuitFigures {
       case 'quality-factor':
         return polePairs(this.rational(output).poles)[figure.pair]?.q ?? NaN
       case 'peak-gain':
-        return peak(this.rational(output))?.gain ?? NaN
+        return this.signedPeak(output)
       case 'peak-frequency':
         return peak(this.rational(output))?.frequencyHz ?? NaN
       case 'notch-depth':
@@ -106,6 +106,13 @@ export class CircuitFigures {
   private gain(output: string, frequency: FigureFrequency, env: Float64Array): number {
     if (frequency.at === 'high') return gainAtHighFrequency(this.rational(output))
     return signedSize(this.response(output, [this.hertz(frequency, env)]))
+  }
+
+  /** Gain at the peak, signed as any gain is. */
+  private signedPeak(output: string): number {
+    const found = peak(this.rational(output))
+    if (!found || !Number.isFinite(found.frequencyHz)) return found?.gain ?? NaN
+    return this.response(output, [found.frequencyHz]).re[0]! < 0 ? -found.gain : found.gain
   }
 
   /** |Z|, ohm. */

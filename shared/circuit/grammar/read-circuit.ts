@@ -1,6 +1,7 @@
 import { nearName } from '../../formula/near-name'
 import type { Problem, Reading } from '../../problems'
 import type { Circuit, LabelSide, OpampPart, PassiveKind, PassivePart } from '../part'
+import { pointsOf } from '../points'
 import { checkCircuit } from './check-circuit'
 import type { Statement, Word } from './statement'
 import { pointOf, statementsOf } from './statement'
@@ -53,10 +54,11 @@ export function readCircuit(text: string): Reading<Circuit> {
       reader.complain({ line: 1, column: 1 }, `A circuit has at most ${STATEMENTS_MAX} lines.`)
     else for (const statement of statements) reader.read(statement)
   }
-  if (reader.problems.length === 0) reader.problems.push(...checkCircuit(reader.circuit))
   reader.settleGrid()
-  return reader.problems.length
-    ? { ok: false, problems: reader.problems as [Problem, ...Problem[]] }
+  reader.problems.push(...checkCircuit(reader.circuit, reader.problems.length === 0))
+  const inOrder = reader.problems.sort((a, b) => a.line! - b.line! || a.column! - b.column!)
+  return inOrder.length
+    ? { ok: false, problems: inOrder as [Problem, ...Problem[]] }
     : { ok: true, value: reader.circuit }
 }
 
@@ -141,6 +143,7 @@ class CircuitReader {
 
   private port(statement: Statement, role: 'input' | 'output') {
     const name = statement.words[1]
+    if (name?.text === '0') return this.fail(statement, name, 'The name 0 is kept for ground.')
     if (!name || !/^[A-Za-z][A-Za-z0-9_]{0,15}$/.test(name.text))
       return this.fail(
         statement,
@@ -235,6 +238,7 @@ class CircuitReader {
 
   private named(statement: Statement, keyword: 'reference' | 'supply' | 'name') {
     const name = statement.words[1]
+    if (name?.text === '0') return this.fail(statement, name, 'The name 0 is kept for ground.')
     if (!name || !NODE_NAME.test(name.text))
       return this.fail(statement, name, `A ${keyword} has a name of letters and digits, such as Vref.`)
     const at = this.point(statement, 2, `The ${keyword} ${name.text}`)
@@ -262,15 +266,8 @@ class CircuitReader {
   /** A drawing without a stated grid is as large as what it holds. */
   settleGrid() {
     const { circuit } = this
-    const points = [
-      ...circuit.parts.flatMap((part) =>
-        part.kind === 'opamp' ? [part.minus, part.plus, part.out, ...(part.supply ?? [])] : part.pins,
-      ),
-      ...circuit.ports.flatMap((port) => [port.plus, ...(port.minus ? [port.minus] : [])]),
-      ...circuit.wires.flatMap((wire) => wire.points),
-      ...[...circuit.grounds, ...circuit.references, ...circuit.supplies, ...circuit.names].map((one) => one.at),
-    ]
-    circuit.grid.width ||= Math.max(4, ...points.map((p) => p.x + 1))
-    circuit.grid.height ||= Math.max(4, ...points.map((p) => p.y + 1))
+    const points = pointsOf(circuit)
+    circuit.grid.width ||= points.reduce((most, { point }) => Math.max(most, point.x + 1), 4)
+    circuit.grid.height ||= points.reduce((most, { point }) => Math.max(most, point.y + 1), 4)
   }
 }

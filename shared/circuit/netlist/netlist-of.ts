@@ -1,6 +1,7 @@
 import type { Problem, Reading } from '../../problems'
 import type { Circuit, GridPoint, SourceSpan } from '../part'
-import { onRun } from '../grammar/statement'
+import { forEachRunPoint } from '../grammar/check-circuit'
+import { pointsOf } from '../points'
 import type { NetElement, Netlist, NetPort } from './netlist'
 import { GROUND } from './netlist'
 
@@ -39,6 +40,8 @@ export function netlistOf(circuit: Circuit): Reading<Netlist> {
       ]
       if (out === GROUND) complain(part.span, `The output of ${part.ref} is joined to ground.`)
       if (plus === minus) complain(part.span, `Both inputs of ${part.ref} are joined.`)
+      const rival = elements.find((element) => element.kind === 'opamp' && element.out === out)
+      if (rival) complain(part.span, `The outputs of ${rival.ref} and ${part.ref} are joined.`)
       elements.push({ kind: 'opamp', ref: part.ref, plus, minus, out })
       continue
     }
@@ -54,11 +57,23 @@ export function netlistOf(circuit: Circuit): Reading<Netlist> {
     ...new Set(
       [...circuit.references.filter((one) => !one.through), ...circuit.supplies].map((one) => nodes.nodeAt(one.at)),
     ),
-  ].filter((node) => node !== GROUND)
+  ]
   const all = new Set([GROUND, ...elements.flatMap(nodesOf), ...ports.flatMap((port) => [port.plus, port.minus])])
-  if (circuit.grounds.length === 0 && signalGrounds.length === 0)
+  ports.forEach((port, k) => {
+    const { span, role } = circuit.ports[k]!
+    if (port.plus === port.minus)
+      complain(span, `The ${role} ${port.name} is joined to ${port.minus === GROUND ? 'ground' : 'itself'}.`)
+    const twin = role === 'input' && ports.find((one, j) => j < k && one.role === role && one.plus === port.plus)
+    if (twin) complain(span, `The inputs ${twin.name} and ${port.name} are joined.`)
+  })
+  const grounded = [...circuit.grounds, ...circuit.references, ...circuit.supplies].length > 0
+  // An op-amp's output is a voltage against ground, so that a follower needs no ground symbol.
+  if (!grounded && !elements.some((element) => element.kind === 'opamp'))
     complain({ line: 1, column: 1, endColumn: 1 }, 'Nothing is joined to ground or to a reference.')
-  if (problems.length) return { ok: false, problems: problems as [Problem, ...Problem[]] }
+  if (problems.length) {
+    problems.sort((a, b) => a.line! - b.line! || a.column! - b.column!)
+    return { ok: false, problems: problems as [Problem, ...Problem[]] }
+  }
   const plain = ({ name, plus, minus }: NetPort): NetPort => ({ name, plus, minus })
   return {
     ok: true,
@@ -67,7 +82,7 @@ export function netlistOf(circuit: Circuit): Reading<Netlist> {
       elements,
       inputs: ports.filter((port) => port.role === 'input').map(plain),
       outputs: ports.filter((port) => port.role === 'output').map(plain),
-      signalGrounds,
+      signalGrounds: signalGrounds.filter((node) => node !== GROUND && all.has(node)),
     },
   }
 }
@@ -85,22 +100,12 @@ class Connectivity {
   private letters = 0
 
   constructor(circuit: Circuit) {
-    const points = new Map<string, GridPoint>()
-    const add = (p: GridPoint) => points.set(key(p), p)
-    for (const part of circuit.parts) {
-      if (part.kind === 'opamp') [part.minus, part.plus, part.out, ...(part.supply ?? [])].forEach(add)
-      else part.pins.forEach(add)
-    }
-    for (const port of circuit.ports) [port.plus, ...(port.minus ? [port.minus] : [])].forEach(add)
-    for (const one of [...circuit.grounds, ...circuit.references, ...circuit.supplies, ...circuit.names]) add(one.at)
     // Corners and ends join; what a run merely crosses does not.
-    for (const wire of circuit.wires) wire.points.forEach(add)
+    const joints = new Set(pointsOf(circuit).map(({ point }) => key(point)))
     for (const wire of circuit.wires)
-      for (let k = 1; k < wire.points.length; k++) {
-        const [a, b] = [wire.points[k - 1]!, wire.points[k]!]
-        for (const p of points.values()) if (onRun(p, a, b)) this.join(p, a)
-        this.join(a, b)
-      }
+      forEachRunPoint(wire.points, (point, from) => {
+        if (joints.has(key(point))) this.join(point, from)
+      })
     const given = [...circuit.ports, ...circuit.names, ...circuit.references, ...circuit.supplies].map(
       (one) => one.name,
     )
@@ -109,7 +114,13 @@ class Connectivity {
 
   private root(point: string): string {
     let at = point
-    while (this.parent.has(at)) at = this.parent.get(at)!
+    while (this.parent.has(at)) {
+      const above = this.parent.get(at)!
+      const further = this.parent.get(above)
+      // Halving the path as it is walked keeps long wires from making long walks.
+      if (further !== undefined) this.parent.set(at, further)
+      at = above
+    }
     return at
   }
 

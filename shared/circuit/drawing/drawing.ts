@@ -1,0 +1,51 @@
+/** One step of the drawing grid, in drawing units (CSS px at full size). */
+export const STEP = 26
+
+export type ShapeStyle = 'wire' | 'body' | 'dot' | 'port' | 'sign'
+
+/** A line or outline; points in drawing units. `path` where arcs are needed. */
+export type Shape =
+  | { form: 'polyline'; style: ShapeStyle; points: [number, number][]; closed?: boolean; ref?: string }
+  | { form: 'circle'; style: ShapeStyle; x: number; y: number; radius: number }
+  | { form: 'path'; style: ShapeStyle; d: string; ref?: string }
+
+export type Anchor = 'start' | 'middle' | 'end'
+
+export interface DrawingText {
+  role: 'designator' | 'port' | 'sign' | 'opamp' | 'node'
+  x: number
+  y: number
+  anchor: Anchor
+  /** Letter and subscript. */
+  text: string
+  sub: string
+  ref?: string
+}
+
+/** Where the live value of a part stands. */
+export interface ValueSlot {
+  ref: string
+  x: number
+  y: number
+  anchor: Anchor
+}
+
+/** A circuit drawn: numbers and plain texts, no markup. */
+export interface Drawing {
+  viewBox: { x: number; y: number; width: number; height: number }
+  shapes: Shape[]
+  texts: DrawingText[]
+  values: ValueSlot[]
+}
+
+export type DrawingStandard = 'iec' | 'ieee'
+
+/** A box in drawing units, for finding room. */
+export interface Box {
+  left: number
+  top: number
+  right: number
+  bottom: number
+}
+
+export const overlaps = (a: Box, b: Box) => a.left < b.right && b.left < a.right && a.top < b.bottom && b.top < a.bottom
