@@ -40,10 +40,12 @@ export async function drain(server: Server): Promise<void> {
   // A kept-alive connection would otherwise be asked again.
   server.prependListener('request', (_req, res) => res.setHeader('Connection', 'close'))
   const closed = new Promise<void>((resolve) => server.close(() => resolve()))
-  server.closeIdleConnections()
+  // Connections whose last answer goes out meanwhile become idle one by one.
+  const closing = setInterval(() => server.closeIdleConnections(), 100)
   const wait = new AbortController()
   await Promise.race([closed, pause(IN_FLIGHT_MS, undefined, { signal: wait.signal }).catch(() => {})])
   wait.abort()
+  clearInterval(closing)
   server.closeAllConnections()
 }
 
