@@ -1,0 +1,10 @@
+/** What the commands of this folder and the tests start things with. */
+export { ensureClient } from './client-build.mjs'
+export { readEnvironment, environmentWithoutOurs } from './environment.mjs'
+export { checkNode } from './node-version.mjs'
+export { ensurePackages } from './packages.mjs'
+export { ROOT, startProduct } from './product.mjs'
+export { command, inSeconds, Refusal, say, step } from './report.mjs'
+export { CHROMIUM, ensureSystemPackages, MARIADB, programPath } from './system-packages.mjs'
+export { startThrowawayDatabase } from './throwaway-database.mjs'
+export { withThrowawayProduct } from './throwaway-product.mjs'
