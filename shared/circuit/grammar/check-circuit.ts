@@ -25,8 +25,8 @@ export function checkCircuit(circuit: Circuit, complete: boolean): Problem[] {
   if (!circuit.ports.some((port) => port.role === 'output'))
     complain(START, 'The circuit has no output: write “output out 18,7”.')
   const touched = statementsAtPoints(circuit)
-  for (const { point, span, what, marks } of endsOf(circuit))
-    if (touched[indexOf(point)]! < (marks ? 2 : 1)) complain(span, `${what} at ${point.x},${point.y} touches nothing.`)
+  for (const { point, span, what } of endsOf(circuit))
+    if (touched[indexOf(point)]! < 2) complain(span, `${what} at ${point.x},${point.y} touches nothing.`)
   return problems
 }
 
@@ -67,29 +67,28 @@ function overlaps(parts: readonly CircuitPart[], complain: Complain) {
   })
 }
 
-/** What a part covers: its run and a third of a step beside it; an op-amp its triangle's height. Steps. */
+/** What a part covers, in steps: its run without the leads; an op-amp the whole triangle. */
 function bodyBox(part: CircuitPart) {
   const pins = pinsOfPart(part).slice(0, 3)
   const [xs, ys] = [pins.map((p) => p.x), pins.map((p) => p.y)]
   const [left, right, top, bottom] = [Math.min(...xs), Math.max(...xs), Math.min(...ys), Math.max(...ys)]
   const beside = 0.3
   if (part.kind === 'opamp') return { left, right, top: top - beside, bottom: bottom + beside }
+  const lead = 0.5
   return left === right
-    ? { left: left - beside, right: right + beside, top, bottom }
-    : { left, right, top: top - beside, bottom: bottom + beside }
+    ? { left: left - beside, right: right + beside, top: top + lead, bottom: bottom - lead }
+    : { left: left + lead, right: right - lead, top: top - beside, bottom: bottom + beside }
 }
 
 interface End {
   point: GridPoint
   span: SourceSpan
   what: string
-  /** False for a name, which joins nothing itself. */
-  marks: boolean
 }
 
 /** Everything that must be joined to something. */
 function endsOf(circuit: Circuit): End[] {
-  const end = (point: GridPoint, span: SourceSpan, what: string, marks = true): End => ({ point, span, what, marks })
+  const end = (point: GridPoint, span: SourceSpan, what: string): End => ({ point, span, what })
   return [
     ...circuit.parts.flatMap((part) =>
       part.kind === 'opamp'
@@ -106,7 +105,7 @@ function endsOf(circuit: Circuit): End[] {
     ...circuit.grounds.map((one) => end(one.at, one.span, 'The ground')),
     ...circuit.references.map((one) => end(one.at, one.span, `The reference ${one.name}`)),
     ...circuit.supplies.map((one) => end(one.at, one.span, `The supply ${one.name}`)),
-    ...circuit.names.map((one) => end(one.at, one.span, `The name ${one.name}`, false)),
+    ...circuit.names.map((one) => end(one.at, one.span, `The name ${one.name}`)),
     ...circuit.wires.flatMap((wire) =>
       [wire.points[0]!, wire.points.at(-1)!].map((point) => end(point, wire.span, 'The end of this wire')),
     ),
@@ -124,7 +123,7 @@ function statementsAtPoints(circuit: Circuit): Uint16Array {
     if (lastLine[k] !== line) count[k]!++
     lastLine[k] = line
   }
-  for (const { point, span } of pointsOf({ ...circuit, names: [], wires: [] })) mark(point, span)
+  for (const { point, span } of pointsOf({ ...circuit, wires: [] })) mark(point, span)
   for (const wire of circuit.wires) forEachRunPoint(wire.points, (point) => mark(point, wire.span))
   return count
 }
