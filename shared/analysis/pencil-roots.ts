@@ -82,11 +82,11 @@ function iterate(logDerivative: LogDerivative, roots: Complex[]): void {
     roots.forEach((root, i) => {
       if (settled[i]) return
       const d = logDerivative(root)
-      if (!d) {
+      const step = d && aberthStep(divide({ re: 1, im: 0 }, d), roots, i)
+      if (!step || !Number.isFinite(step.re + step.im)) {
         settled[i] = true
         return
       }
-      const step = aberthStep(divide({ re: 1, im: 0 }, d), roots, i)
       root.re -= step.re
       root.im -= step.im
       const size = Math.hypot(step.re, step.im) / Math.hypot(root.re, root.im)

@@ -38,8 +38,8 @@ export function polynomialFromRoots(roots: readonly Complex[]): number[] {
 
 /**
  * All roots of a real polynomial, each polished to the rounding of its own evaluation. Real roots are exactly real and
- * the others exact conjugate pairs. A root of multiplicity m is known to about ε^(1/m) only; its copies are replaced by
- * their mean, which is known far better.
+ * the others exact conjugate pairs. A root of multiplicity m shows as m roots about ε^(1/m) apart; these are replaced by
+ * equal copies of the root of the derivative between them, which is known far better.
  *
  * @param coefficients descending powers; leading zeros are left out
  * @returns roots, by magnitude; none for a constant
@@ -60,11 +60,16 @@ export function polynomialRoots(coefficients: Polynomial): Complex[] {
     roots.forEach((root, i) => {
       if (settled[i]) return
       const step = aberthStep(newtonStep(c, root), roots, i)
+      // At a multiple root p and p′ vanish together.
+      if (!Number.isFinite(step.re + step.im)) {
+        settled[i] = true
+        return
+      }
       root.re -= step.re
       root.im -= step.im
       settled[i] = !(Math.hypot(step.re, step.im) > 1e-15 * Math.hypot(root.re, root.im))
     })
-  return [...origin, ...conjugatePairs(meanOfCopies(roots, c.length))].sort(byMagnitude)
+  return [...origin, ...conjugatePairs(mergeCopies(roots, c))].sort(byMagnitude)
 }
 
 const byMagnitude = (a: Complex, b: Complex) => Math.hypot(a.re, a.im) - Math.hypot(b.re, b.im) || a.im - b.im
@@ -131,26 +136,41 @@ function startingPoints(c: Polynomial): Complex[] {
   return points
 }
 
-function meanOfCopies(roots: Complex[], length: number): Complex[] {
-  const left = [...roots]
+/** m roots nearer to each other than rounding can hold m copies apart count as copies. */
+function mergeCopies(roots: Complex[], c: Polynomial): Complex[] {
+  let left = [...roots]
   const done: Complex[] = []
-  while (left.length) {
-    const group = [left.pop()!]
-    for (let g = 0; g < group.length; g++)
-      for (let i = left.length - 1; i >= 0; i--) {
-        const near = Math.hypot(left[i]!.re - group[g]!.re, left[i]!.im - group[g]!.im)
-        const copies = group.length + 1
-        const blur = 4 * (length * Number.EPSILON) ** (1 / copies)
-        if (near < blur * Math.hypot(group[g]!.re, group[g]!.im)) group.push(...left.splice(i, 1))
+  for (let m = roots.length; m > 1; m--) {
+    const blur = 4 * (c.length * Number.EPSILON) ** (1 / m)
+    for (const root of [...left]) {
+      const group = left.filter((z) => Math.hypot(z.re - root.re, z.im - root.im) < blur * Math.hypot(z.re, z.im))
+      if (group.length < m) continue
+      left = left.filter((z) => !group.includes(z))
+      const mean = { re: 0, im: 0 }
+      for (const { re, im } of group) {
+        mean.re += re / group.length
+        mean.im += im / group.length
       }
-    const mean = { re: 0, im: 0 }
-    for (const { re, im } of group) {
-      mean.re += re / group.length
-      mean.im += im / group.length
+      const copy = rootOfDerivative(c, group.length - 1, mean)
+      done.push(...group.map(() => ({ ...copy })))
     }
-    done.push(...group.map(() => ({ ...mean })))
   }
-  return done
+  return [...left, ...done]
+}
+
+/** A root of multiplicity m is a simple one of the (m − 1)-th derivative, where it is known to the last digits. */
+function rootOfDerivative(c: Polynomial, order: number, near: Complex): Complex {
+  let derivative = [...c]
+  for (let k = 0; k < order; k++) derivative = derivative.slice(0, -1).map((x, i) => x * (derivative.length - 1 - i))
+  const at = { ...near }
+  for (let round = 0; round < 10; round++) {
+    const step = newtonStep(derivative, at)
+    if (!Number.isFinite(step.re + step.im)) break
+    at.re -= step.re
+    at.im -= step.im
+    if (Math.hypot(step.re, step.im) <= 1e-16 * Math.hypot(at.re, at.im)) break
+  }
+  return at
 }
 
 /** Makes roots that are real or conjugate up to rounding exactly so. */
@@ -161,7 +181,9 @@ export function conjugatePairs(roots: readonly Complex[], blur = 1e-10): Complex
   const paired = upper.flatMap((z) => {
     const distance = (w: Complex) => Math.hypot(w.re - z.re, w.im + z.im)
     const mate = lower.reduce((best, w, k) => (best < 0 || distance(w) < distance(lower[best]!) ? k : best), -1)
-    const [w] = mate < 0 ? [{ re: z.re, im: -z.im }] : lower.splice(mate, 1)
+    // What has no mate is real but for rounding.
+    if (mate < 0) return [{ re: z.re, im: 0 }]
+    const [w] = lower.splice(mate, 1)
     const re = (z.re + w!.re) / 2
     const im = (z.im - w!.im) / 2
     return [
@@ -169,7 +191,7 @@ export function conjugatePairs(roots: readonly Complex[], blur = 1e-10): Complex
       { re, im: -im },
     ]
   })
-  return [...real.map(({ re }) => ({ re, im: 0 })), ...paired]
+  return [...[...real, ...lower].map(({ re }) => ({ re, im: 0 })), ...paired]
 }
 
 export function divide(a: Complex, b: Complex): Complex {
