@@ -1,4 +1,3 @@
-import { join } from 'node:path'
 import express, { type RequestHandler } from 'express'
 import { ProblemError } from '#shared/problems'
 
@@ -26,9 +25,9 @@ export function clientFiles(folder: string): RequestHandler[] {
     (req, res, next) => {
       const isPage = req.method === 'GET' || req.method === 'HEAD'
       const path = decodeURIComponent(req.path)
-      if (!isPage || /^\/(api|health|csp-reports)(\/|$)/.test(path) || looksLikeFile(path)) return next()
+      if (!isPage || /^\/(api|assets|health|csp-reports)(\/|$)/.test(path) || looksLikeFile(path)) return next()
       res.set('Cache-Control', 'no-cache')
-      res.sendFile(join(folder, 'index.html'), { etag: false, cacheControl: false }, (error) => {
+      res.sendFile('index.html', { root: folder, etag: false, cacheControl: false }, (error) => {
         if (error && !res.headersSent) next(new ProblemError('not-found', 'The client is not built yet.'))
       })
     },

@@ -1,4 +1,5 @@
 import { and, eq, isNull } from 'drizzle-orm'
+import type { Role } from '#shared/contracts/names'
 import type { Queries } from '../database'
 import { people, type PersonRow } from '../database/tables/people'
 
@@ -15,6 +16,10 @@ export const peopleRepository = {
       .from(people)
       .where(and(eq(people.id, id), isNull(people.disabledAt)))
     return row ?? null
+  },
+  /** Everybody of a role, in the order they came. */
+  ofRole(queries: Queries, role: Role): Promise<PersonRow[]> {
+    return queries.select().from(people).where(eq(people.role, role)).orderBy(people.id)
   },
   async insert(queries: Queries, person: typeof people.$inferInsert): Promise<void> {
     await queries.insert(people).values({ ...person, email: person.email.toLowerCase() })

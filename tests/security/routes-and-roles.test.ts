@@ -73,7 +73,7 @@ describe('routes and roles', () => {
 
   it.each(TABLE)('$route', async ({ route, at, body, contentType, expected }) => {
     const [method, path] = route.split(' ') as [string, string]
-    const headers = contentType ? { 'content-type': contentType } : {}
+    const headers: Record<string, string> = contentType ? { 'content-type': contentType } : {}
     const statuses: number[] = []
     for (const caller of CALLERS)
       statuses.push((await clients[caller].request(method, at ?? path, body, headers)).status)
