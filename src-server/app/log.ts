@@ -24,6 +24,12 @@ const TEXT_MAX = 2000
  */
 export function openLog({ logLevel, logTo, dataDir }: Pick<Configuration, 'logLevel' | 'logTo' | 'dataDir'>): Logger {
   if (logTo === 'file') mkdirSync(join(dataDir, 'log'), { recursive: true, mode: 0o700 })
+  const destination =
+    logTo === 'file'
+      ? pino.destination({ dest: join(dataDir, 'log', 'poleshelf.log'), sync: true, mode: 0o600 })
+      : pino.destination({ dest: 1, sync: true })
+  // A full disk or a closed pipe costs lines of the log, never the service.
+  destination.on('error', () => {})
   return pino(
     {
       level: logLevel,
@@ -32,9 +38,7 @@ export function openLog({ logLevel, logTo, dataDir }: Pick<Configuration, 'logLe
       redact: { paths: SECRET_NAMES.flatMap((name) => [name, `*.${name}`, `*.*.${name}`]), censor: '(not logged)' },
       serializers: { err: errorFacts },
     },
-    logTo === 'file'
-      ? pino.destination({ dest: join(dataDir, 'log', 'poleshelf.log'), sync: true, mode: 0o600 })
-      : pino.destination({ dest: 1, sync: true }),
+    destination,
   )
 }
 

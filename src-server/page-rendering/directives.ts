@@ -2,6 +2,9 @@ import type { MarkdownIt } from 'markdown-it'
 
 const DIRECTIVE = /^:(value|formula)\[([A-Za-z\u0370-\u03ff][A-Za-z0-9_ \u0370-\u03ff]{0,39})\]/
 
+/** Text up to the next character that a rule may begin with. */
+const PLAIN = /[^\n!#$%&*+\-:<=>@[\\\]^_`{}~]+/y
+
 /** `:value[f_c]`, a live number in the prose, and `:formula[f_c]`, the formula that computes it. */
 export function directives(markdown: MarkdownIt) {
   markdown.inline.ruler.before('emphasis', 'directive', (state, silent) => {
@@ -18,11 +21,11 @@ export function directives(markdown: MarkdownIt) {
   })
   // A colon ends plain text, so that the rule is asked.
   markdown.inline.ruler.before('text', 'directive_text', (state, silent) => {
-    const rest = state.src.slice(state.pos)
-    const plain = /^[^\n!#$%&*+\-:<=>@[\\\]^_`{}~]+/.exec(rest)
+    PLAIN.lastIndex = state.pos
+    const plain = PLAIN.exec(state.src)?.[0]
     if (!plain) return false
-    if (!silent) state.pending += plain[0]
-    state.pos += plain[0].length
+    if (!silent) state.pending += plain
+    state.pos += plain.length
     return true
   })
   markdown.inline.ruler.disable('text')

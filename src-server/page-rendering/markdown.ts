@@ -1,4 +1,5 @@
 import MarkdownIt from 'markdown-it'
+import { ProblemError } from '#shared/problems'
 import { directives } from './directives'
 import { mathRules } from './math'
 import { headingIds, type Heading } from './headings'
@@ -10,6 +11,8 @@ export interface RenderedMarkdown {
 }
 
 const NESTING_MAX = 30
+/** Pieces of a page; a page of this size is rendered in well under half a second. */
+const TOKENS_MAX = 12_000
 const WIDGETS = ['circuit', 'calculator', 'limits']
 
 /** CommonMark with the page's own marks. Raw HTML stays text; widgets become empty places that the client fills. */
@@ -32,9 +35,15 @@ markdown.renderer.rules['fence'] = (tokens, index) => {
   return `<pre tabindex="0"><code>${markdown.utils.escapeHtml(content)}</code></pre>\n`
 }
 
-/** Markdown to HTML that has yet to be sanitised, with the headings found. */
+/**
+ * Markdown to HTML that has yet to be sanitised, with the headings found.
+ * @throws {ProblemError} 'page-not-read' when the notes hold too many pieces
+ */
 export function renderMarkdown(body: string): RenderedMarkdown {
   const environment: { headings: Heading[] } = { headings: [] }
-  const html = markdown.render(body, environment)
-  return { html, contents: environment.headings }
+  const tokens = markdown.parse(body, environment)
+  const count = tokens.reduce((sum, token) => sum + 1 + (token.children?.length ?? 0), 0)
+  if (count > TOKENS_MAX)
+    throw new ProblemError('page-not-read', 'These notes hold too many pieces (cells, links, items); split the page.')
+  return { html: markdown.renderer.render(tokens, markdown.options, environment), contents: environment.headings }
 }

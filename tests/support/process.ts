@@ -30,7 +30,7 @@ export async function serverProcess(environment: Record<string, string>): Promis
   })
   cleanUps.push(() => {
     child.kill('SIGKILL')
-    rmSync(dataDir, { recursive: true, force: true })
+    if (!environment['DATA_DIR']) rmSync(dataDir, { recursive: true, force: true })
   })
   const ended = new Promise<number | null>((done) => child.once('exit', (code) => done(code)))
   let said = ''
