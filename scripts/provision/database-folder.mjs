@@ -7,6 +7,7 @@ import {
   readFileSync,
   renameSync,
   rmSync,
+  symlinkSync,
   writeFileSync,
 } from 'node:fs'
 import { tmpdir, userInfo } from 'node:os'
@@ -17,8 +18,6 @@ import { programPath } from './system-packages.mjs'
 
 const FOLDER = 'database'
 const DRAFT = 'database.draft-'
-/** Longest path of a Unix socket, with room for its ending zero. */
-const SOCKET_PATH_MAX = 100
 
 export const DATABASE_NAME = 'poleshelf'
 
@@ -30,7 +29,7 @@ const ACCOUNTS = { owner: 'poleshelf', runtime: 'poleshelf_app' }
 /**
  * @typedef {object} DatabaseFolder
  * @property {string} data mariadbd's own folder
- * @property {string} socket @property {string} log
+ * @property {string} log
  * @property {string} portFile where the port is remembered
  * @property {Credentials} credentials
  */
@@ -60,7 +59,6 @@ export async function ensureDatabaseFolder(parent, { isThrowaway = false } = {})
   return {
     isNew,
     data: join(folder, 'data'),
-    socket: socketPath(folder),
     log: join(folder, 'mariadbd.log'),
     portFile: join(folder, 'port'),
     credentials: credentialsOf(folder),
@@ -80,12 +78,6 @@ function credentialsOf(folder) {
   }
 }
 
-function socketPath(folder) {
-  const path = join(folder, 'socket')
-  if (Buffer.byteLength(path) <= SOCKET_PATH_MAX) return path
-  return join(mkdtempSync(join(tmpdir(), 'poleshelf-socket-')), 's')
-}
-
 async function initialise(draft, isThrowaway) {
   const data = join(draft, 'data')
   mkdirSync(data, { mode: 0o700 })
@@ -96,16 +88,7 @@ async function initialise(draft, isThrowaway) {
     runtimePassword: secret(),
     ...(isThrowaway && { rootPassword: secret() }),
   }
-  await runOrRefuse('MariaDB could not make its tables', programPath('mariadb-install-db') ?? 'mariadb-install-db', [
-    '--no-defaults',
-    `--datadir=${data}`,
-    '--skip-test-db',
-    '--skip-name-resolve',
-    '--auth-root-authentication-method=socket',
-    `--auth-root-socket-user=${accountName()}`,
-    ...asRoot(),
-    LOG_SIZE,
-  ])
+  await makeSystemTables(data)
   await runOrRefuse(
     'MariaDB could not make the accounts',
     programPath('mariadbd') ?? 'mariadbd',
@@ -113,6 +96,27 @@ async function initialise(draft, isThrowaway) {
     { input: accountStatements(credentials) },
   )
   writeFileSync(join(draft, 'credentials.json'), `${JSON.stringify(credentials, null, 2)}\n`, { mode: 0o600 })
+}
+
+/** mariadb-install-db is a shell script that takes paths apart at spaces; it gets a link whose name has none. */
+async function makeSystemTables(data) {
+  const folder = mkdtempSync(join(/^[\w./-]+$/.test(tmpdir()) ? tmpdir() : '/tmp', 'poleshelf-new-'))
+  const plainPath = join(folder, 'data')
+  symlinkSync(data, plainPath)
+  try {
+    await runOrRefuse('MariaDB could not make its tables', programPath('mariadb-install-db') ?? 'mariadb-install-db', [
+      '--no-defaults',
+      `--datadir=${plainPath}`,
+      '--skip-test-db',
+      '--skip-name-resolve',
+      '--auth-root-authentication-method=socket',
+      `--auth-root-socket-user=${accountName()}`,
+      ...asRoot(),
+      LOG_SIZE,
+    ])
+  } finally {
+    rmSync(folder, { recursive: true, force: true })
+  }
 }
 
 export const LOG_SIZE = '--innodb-log-file-size=48M'

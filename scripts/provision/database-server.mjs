@@ -1,4 +1,4 @@
-import { readFileSync, rmSync, writeFileSync } from 'node:fs'
+import { readFileSync, writeFileSync } from 'node:fs'
 import { connect } from 'node:net'
 import { setTimeout as pause } from 'node:timers/promises'
 import { asRoot, databaseUrls, ensureDatabaseFolder, LOG_SIZE } from './database-folder.mjs'
@@ -18,8 +18,9 @@ const serverArguments = (folder, port) => [
   '--no-defaults',
   ...asRoot(),
   `--datadir=${folder.data}`,
-  `--socket=${folder.socket}`,
-  `--pid-file=${folder.data}/mariadbd.pid`,
+  // Both relative to the data folder: the path of a Unix socket ends at 107 bytes.
+  '--socket=mariadbd.sock',
+  '--pid-file=mariadbd.pid',
   `--log-error=${folder.log}`,
   `--port=${port}`,
   '--bind-address=127.0.0.1',
@@ -73,10 +74,7 @@ export async function startDatabaseServer(parent, { isThrowaway = false, onTroub
         return server.pid
       },
       kill: () => server.kill(),
-      async stop() {
-        await server.stop(STOP_WITHIN_MS)
-        rmSync(folder.socket, { force: true })
-      },
+      stop: () => server.stop(STOP_WITHIN_MS),
     }
   }
 }

@@ -62,7 +62,8 @@ export function readEnvironment(environment) {
   const port = given('PORT') ?? String(DEFAULT_PORT)
   if (!/^\d{1,5}$/.test(port) || Number(port) > 65535) refuse('PORT', 'a whole number from 0 to 65535')
   const host = given('HOST') ?? '127.0.0.1'
-  if (!/^[\w.:[\]-]+$/.test(host)) refuse('HOST', 'the name or number of a network address, such as 127.0.0.1')
+  const isAddress = /^[\w.:[\]-]+$/.test(host)
+  if (!isAddress) refuse('HOST', 'the name or number of a network address, such as 127.0.0.1')
   if (given('BASE_URL') && !/^https?:\/\/[^/?#\s]+\/?$/.test(given('BASE_URL')))
     refuse('BASE_URL', 'scheme, host and port, such as https://poleshelf.example')
   for (const name of ['DATABASE_URL', 'DATABASE_RUNTIME_URL'])
@@ -77,7 +78,7 @@ export function readEnvironment(environment) {
 
   const isOutsideProduction = given('NODE_ENV') === 'production' && given('DATABASE_URL') !== undefined
   const demo = given('DEMO') ?? (isOutsideProduction ? '0' : '1')
-  if (demo === '1' && !isLoopback(host))
+  if (demo === '1' && isAddress && !isLoopback(host))
     sentences.push(
       `HOST ${host} listens beyond this machine, where demonstration accounts do not belong: set DEMO=0, or DEMO=force if that is meant.`,
     )

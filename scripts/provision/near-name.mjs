@@ -13,9 +13,15 @@ export function nearName(given, known) {
   if (given !== bare && known.includes(bare)) return bare
   const near = known
     .map((name) => ({ name, slips: slipsBetween(bare.toUpperCase(), name) }))
-    .filter(({ name, slips }) => slips <= (name.length >= LONG_NAME ? 2 : bare === bare.toUpperCase() ? 1 : 0))
+    .filter(({ name, slips }) => slips <= slipsAllowed(name, bare))
     .sort((a, b) => a.slips - b.slips)
   return near[0]?.name ?? null
+}
+
+function slipsAllowed(name, given) {
+  if (name.length >= LONG_NAME) return 2
+  // Small letters in a short name are another program's: `port`, `host`.
+  return given === given.toUpperCase() ? 1 : -1
 }
 
 /** Letters wrong, missing, too many or swapped with a neighbour (Damerau 1964, optimal string alignment). */

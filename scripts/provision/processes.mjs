@@ -5,9 +5,11 @@ import { Refusal } from './report.mjs'
 
 /** @type {Set<import('node:child_process').ChildProcess>} */
 const running = new Set()
+let isEnding = false
 
-/** Asks what `run` started to end. */
+/** Asks what `run` started to end, and lets it start nothing more. */
 export function endRunning() {
+  isEnding = true
   for (const child of running) child.kill('SIGTERM')
 }
 
@@ -19,6 +21,7 @@ export function endRunning() {
  * @returns {Promise<{ code: number | null, output: string }>} code null: it could not be run or was killed
  */
 export function run(program, args, { cwd, env, input, show = false } = {}) {
+  if (isEnding) return Promise.resolve({ code: null, output: 'broken off' })
   return new Promise((done) => {
     const child = spawn(program, args, {
       cwd,
