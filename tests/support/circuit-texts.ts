@@ -67,13 +67,13 @@ output out 20,6
   'lp1-ni': {
     check: 'lp1-noninverting-gain',
     text: `format 1
-grid 20 x 10
+grid 20 x 11
 input in 1,2
 R R1 3,2 6,2
 C C1 8,3 8,5
 opamp U1 - 12,4 + 12,2 out 16,3
 R Rf 13,6 16,6
-R Rg 11,6 11,8
+R Rg 11,6 11,9
 wire 1,2 3,2
 wire 6,2 12,2
 wire 8,2 8,3
@@ -82,7 +82,7 @@ wire 11,6 13,6
 wire 16,6 17,6 17,3
 wire 16,3 19,3
 ground 8,5
-ground 11,8
+ground 11,9
 output out 19,3
 `,
   },

@@ -22,12 +22,19 @@ export interface DrawingText {
   ref?: string
 }
 
-/** Where the live value of a part stands. */
+/** Where the live value of a part stands: baseline, and the room kept for it, drawing units. */
 export interface ValueSlot {
   ref: string
   x: number
   y: number
   anchor: Anchor
+  width: number
+}
+
+/** What a part covers, for pointing at it and for marking it; `line` of the circuit text, from 1. */
+export interface PartArea extends Box {
+  ref: string
+  line: number
 }
 
 /** A circuit drawn: numbers and plain texts, no markup. */
@@ -36,6 +43,9 @@ export interface Drawing {
   shapes: Shape[]
   texts: DrawingText[]
   values: ValueSlot[]
+  /** Where the op-amp chosen for a designator may be named. */
+  models: ValueSlot[]
+  areas: PartArea[]
 }
 
 export type DrawingStandard = 'iec' | 'ieee'
@@ -48,4 +58,7 @@ export interface Box {
   bottom: number
 }
 
-export const overlaps = (a: Box, b: Box) => a.left < b.right && b.left < a.right && a.top < b.bottom && b.top < a.bottom
+/** Area that two boxes share, square units. */
+export const sharedArea = (a: Box, b: Box) =>
+  Math.max(0, Math.min(a.right, b.right) - Math.max(a.left, b.left)) *
+  Math.max(0, Math.min(a.bottom, b.bottom) - Math.max(a.top, b.top))

@@ -162,25 +162,19 @@ export function referenceShapes(at: GridPoint): Shape[] {
   ]
 }
 
-/** A supply: a bar above its point. */
-export function supplyShapes(at: GridPoint): Shape[] {
+/** A supply: a bar above its point, or below it. */
+export function supplyShapes(at: GridPoint, direction: 1 | -1): Shape[] {
   const [x, y] = px(at)
+  const end = y + direction * 10
+  const line = (points: [number, number][]): Shape => ({ form: 'polyline', style: 'wire', points })
   return [
-    {
-      form: 'polyline',
-      style: 'wire',
-      points: [
-        [x, y],
-        [x, y - 10],
-      ],
-    },
-    {
-      form: 'polyline',
-      style: 'wire',
-      points: [
-        [x - 9, y - 10],
-        [x + 9, y - 10],
-      ],
-    },
+    line([
+      [x, y],
+      [x, end],
+    ]),
+    line([
+      [x - 9, end],
+      [x + 9, end],
+    ]),
   ]
 }
