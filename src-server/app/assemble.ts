@@ -1,11 +1,16 @@
 import { join } from 'node:path'
 import type { Express } from 'express'
 import type { Logger } from 'pino'
+import { blockRepository, blockRoutes, blockService, loadSeedBlocks } from '../blocks'
+import { computeRoutes, computeService } from '../compute'
 import { connectionOptions } from '../database/pool'
 import { openDatabase } from '../database'
+import { documentRoutes } from '../documents'
 import { buildApp, cspReportLog, cspReportRoutes, idempotency } from '../http'
+import { pageRenderer } from '../page-rendering'
 import { makeDemonstrationPeople, peopleRepository } from '../people'
 import { BCRYPT_COST, passwordHasher, signInFeature } from '../sign-in'
+import { sizingRepository, sizingRoutes, sizingService } from '../sizings'
 import type { Configuration } from './configuration'
 import { healthRoutes } from './health'
 import { secretsOf } from './secrets'
@@ -57,6 +62,11 @@ export async function assemble({ configuration, baseUrl, log, ...options }: Asse
     onTouchFailure: (error) => log.warn({ err: error }, 'session not touched'),
   })
 
+  const renderPage = pageRenderer()
+  const blocks = blockService({ database, blocks: blockRepository, renderPage })
+  const compute = computeService({ blocks })
+  const sizings = sizingService({ database, blocks, sizings: sizingRepository, baseUrl, now })
+
   const app: Express = buildApp({
     log,
     overHttps,
@@ -67,7 +77,15 @@ export async function assemble({ configuration, baseUrl, log, ...options }: Asse
     idempotency: answersByKey,
     databaseIsReady: database.isReady,
     checkAnswers: options.checkAnswers ?? false,
-    routes: [...healthRoutes({ database, isStopping: () => stopping }), ...cspReportRoutes(reports), ...signIn.routes],
+    routes: [
+      ...healthRoutes({ database, isStopping: () => stopping }),
+      ...cspReportRoutes(reports),
+      ...signIn.routes,
+      ...blockRoutes(blocks),
+      ...computeRoutes(compute),
+      ...sizingRoutes(sizings),
+      ...documentRoutes({ folder: configuration.helpFolder, renderPage }),
+    ],
   })
 
   /** Runs after the migrations, before the first request is served; each step can be run again. */
@@ -81,6 +99,20 @@ export async function assemble({ configuration, baseUrl, log, ...options }: Asse
           file: join(configuration.dataDir, 'accounts.json'),
           now,
         })
+    },
+    async () => {
+      const [author] = await people.ofRole(database.queries, 'editor')
+      const [approver] = await people.ofRole(database.queries, 'lead')
+      if (!configuration.demonstration || !author || !approver) return
+      await loadSeedBlocks({
+        database,
+        blocks: blockRepository,
+        folder: configuration.seedFolder,
+        author,
+        approver,
+        now,
+        log,
+      })
     },
     () => hasher.warmUp(),
   ]

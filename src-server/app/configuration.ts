@@ -56,6 +56,8 @@ export interface Configuration {
   dataDir: string
   clientFolder: string
   migrations: string
+  seedFolder: string
+  helpFolder: string
   trustProxy: false | string | number
   databaseUrl: string
   databaseRuntimeUrl: string
@@ -107,6 +109,8 @@ export function readConfiguration(environment: Record<string, string | undefined
       dataDir: resolve(read.DATA_DIR ?? join(read.XDG_DATA_HOME ?? join(homedir(), '.local', 'share'), 'poleshelf')),
       clientFolder: resolve(read.CLIENT_DIR),
       migrations: resolve('drizzle'),
+      seedFolder: resolve('content-seed'),
+      helpFolder: resolve('content-docs'),
       trustProxy: proxies === 'no' ? false : /^[1-9]$/.test(proxies) ? Number(proxies) : proxies,
       databaseUrl: read.DATABASE_URL,
       databaseRuntimeUrl: read.DATABASE_RUNTIME_URL ?? read.DATABASE_URL,

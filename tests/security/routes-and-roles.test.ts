@@ -48,7 +48,7 @@ const TABLE: readonly Row[] = [
   { route: 'GET /api/sizings', expected: [401, 200, 200, 200] },
   { route: 'GET /api/sizings/:number', at: '/api/sizings/S-1', expected: [401, 200, 200, 200] },
   { route: 'POST /api/sizings/:number/check', at: '/api/sizings/S-1/check', expected: [401, 200, 200, 200] },
-  { route: 'GET /api/documents/:name', at: '/api/documents/page-format', expected: [401, 200, 200, 200] },
+  { route: 'GET /api/documents/:name', at: '/api/documents/block-format', expected: [401, 200, 200, 200] },
   { route: 'POST /api/sign-out', expected: [204, 204, 204, 204] },
 ]
 

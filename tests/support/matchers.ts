@@ -25,7 +25,8 @@ expect.extend({
 })
 
 declare module 'vitest' {
-  interface Matchers<T = unknown> {
+  // eslint-disable-next-line @typescript-eslint/no-explicit-any -- as vitest itself declares it
+  interface Matchers<T = any> {
     toAgreeWith(wanted: number | ArrayLike<number>, tolerance: Tolerance): T
   }
 }

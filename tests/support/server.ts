@@ -106,7 +106,7 @@ export async function testServer(settings: TestServerSettings = {}): Promise<Tes
   const assembly = await assemble({
     configuration: { ...reading.value, migrations: resolve('drizzle') },
     baseUrl: reading.value.baseUrl ?? base,
-    log: pino({ level: 'silent' }),
+    log: pino({ level: process.env['TEST_LOG'] ?? 'silent' }),
     bcryptCost: 4,
     checkAnswers: true,
     ...settings.options,

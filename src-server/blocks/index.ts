@@ -1,0 +1,5 @@
+export { blockRepository, type WholeRevision } from './repository'
+export { blockRoutes, CodeParams, RevisionParams } from './routes'
+export { loadSeedBlocks } from './seed'
+export { blockService, type BlockService } from './service'
+export { titleBlockOf } from './title-block'

@@ -1,0 +1,2 @@
+export { computeRoutes } from './routes'
+export { computeService, type ComputeService } from './service'

@@ -1,0 +1,3 @@
+export { sizingRepository } from './repository'
+export { sizingRoutes } from './routes'
+export { sizingService, type SizingService } from './service'
