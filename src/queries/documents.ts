@@ -1,15 +1,7 @@
 import { useQuery } from '@pinia/colada'
 import { toValue, type MaybeRefOrGetter } from 'vue'
-import { z } from 'zod'
+import { HelpDocument } from '#shared/contracts/documents'
 import { call } from './api'
-
-const HelpDocument = z.object({
-  name: z.string(),
-  title: z.string(),
-  html: z.string(),
-  contents: z.array(z.object({ id: z.string(), text: z.string(), level: z.number().int() })),
-})
-export type HelpDocument = z.output<typeof HelpDocument>
 
 /** A page of the help, as sanitised HTML. */
 export const useHelpDocument = (name: MaybeRefOrGetter<string>) =>
