@@ -30,6 +30,7 @@ export const DIMENSIONS: Record<Unit, Dimension> = {
   W: of(1, 1),
   'V/s': of(1, 0, -1),
   'V/√Hz': of(1, 0, 0.5),
+  'A/√Hz': of(0, 1, 0.5),
 }
 
 const CONSTANT_DIMENSIONS: Record<keyof typeof CONSTANTS, Dimension> = { pi: of(), k_B: of(1, 1, 1, -1) }
@@ -174,6 +175,7 @@ const NAMED: [Dimension, string][] = [
   [DIMENSIONS.W, 'a power'],
   [of(-1, 1), 'a conductance'],
   [DIMENSIONS['V/√Hz'], 'a noise density'],
+  [DIMENSIONS['A/√Hz'], 'a current noise density'],
 ]
 
 /** A dimension in words: "a time", or by its units, "V² A⁻¹". */

@@ -11,6 +11,7 @@ export const UNITS = [
   '',
   '%',
   'V/√Hz',
+  'A/√Hz',
   'rad/s',
   'dB',
   '°',
@@ -32,10 +33,11 @@ export const UNIT_WORDS: Record<Unit, { quantity: string; example: string }> = {
   '': { quantity: 'a plain number', example: '0.707' },
   '%': { quantity: 'a percentage', example: '1 %' },
   'V/√Hz': { quantity: 'a noise density', example: '8 nV/√Hz' },
+  'A/√Hz': { quantity: 'a current noise density', example: '2 pA/√Hz' },
   'rad/s': { quantity: 'an angular frequency', example: '15 krad/s' },
   dB: { quantity: 'a level', example: '6 dB' },
   '°': { quantity: 'an angle', example: '45 °' },
-  'V/s': { quantity: 'a slew rate', example: '5 MV/s' },
+  'V/s': { quantity: 'a slew rate', example: '5 V/µs' },
   W: { quantity: 'a power', example: '0.1 W' },
 }
 
@@ -51,12 +53,18 @@ export const UNIT_SPELLINGS: Record<Unit, string[]> = {
   K: ['K'],
   '': [],
   '%': ['%'],
-  'V/√Hz': ['V/√Hz', 'V/rtHz'],
+  'V/√Hz': ['V/√Hz', 'V/rtHz', 'V/sqrt(Hz)'],
+  'A/√Hz': ['A/√Hz', 'A/rtHz', 'A/sqrt(Hz)'],
   'rad/s': ['rad/s'],
   dB: ['dB'],
   '°': ['°', 'deg'],
   'V/s': ['V/s'],
   W: ['W'],
+}
+
+/** Whole spellings that carry a power of ten of their own: slew rates are written per microsecond. */
+export const UNIT_MULTIPLES: Partial<Record<Unit, Record<string, number>>> = {
+  'V/s': { 'V/µs': 6, 'V/μs': 6, 'V/us': 6, 'V/ms': 3 },
 }
 
 /** SI prefixes by letter: power of ten. `K` is kilo on drawings, `u` is micro on keyboards. */
@@ -81,4 +89,5 @@ export const CODE_LETTERS: Partial<Record<Unit, Record<string, number>>> = {
   F: { p: -12, n: -9, µ: -6, μ: -6, u: -6, m: -3, F: 0 },
   H: { n: -9, µ: -6, μ: -6, u: -6, m: -3, H: 0 },
   Hz: { k: 3, K: 3, M: 6, G: 9 },
+  V: { V: 0 },
 }
