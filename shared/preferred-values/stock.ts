@@ -2,6 +2,9 @@ import type { PassiveKind } from '../circuit/part'
 import { isPreferred, preferredBetween } from './lookup'
 import type { SeriesName } from './series'
 
+/** Limits of a line are met by values that differ from them in the last digits of a double. */
+const SLACK = 1e-12
+
 /** One line of what the stores hold: a series over a range. Tolerance as a fraction, drift per kelvin. */
 export interface StockLine {
   kind: PassiveKind
@@ -41,29 +44,25 @@ export const HOUSE_STOCK: readonly StockLine[] = [
   },
 ]
 
-/** Widest range over which any line holds a kind. */
-const rangeOf = (kind: PassiveKind) => {
-  const lines = HOUSE_STOCK.filter((line) => line.kind === kind)
-  return { from: Math.min(...lines.map((line) => line.from)), to: Math.max(...lines.map((line) => line.to)) }
-}
+/** The stores hold a value when a line of its kind spans it and has it in its series. */
+const holds = (line: StockLine, value: number): boolean =>
+  value >= line.from * (1 - SLACK) && value <= line.to * (1 + SLACK) && isPreferred(value, line.series)
 
 /**
- * Values of a series that a part may take, inside its own range and the range of the stores, ascending.
- * A coarser series is contained in what a finer line holds only where the value is the same; the series asked decides.
+ * Values of a series that the stores hold for a kind of part, inside the part's own range, ascending. Where a line
+ * holds another series, the values that the two share count: of E24 capacitors above 10 nF, those that are in E12 too.
+ * @param from in ohm, farad or henry
+ * @example stockValues('capacitor', 'E6', 1e-9, 4e-9) // [1e-9, 1.5e-9, 2.2e-9, 3.3e-9]
  */
 export function stockValues(kind: PassiveKind, series: SeriesName, from = 0, to = Infinity): number[] {
-  const range = rangeOf(kind)
-  return preferredBetween(Math.max(from, range.from), Math.min(to, range.to), series)
+  const lines = HOUSE_STOCK.filter((line) => line.kind === kind)
+  const least = Math.max(from, Math.min(...lines.map((line) => line.from)))
+  const most = Math.min(to, Math.max(...lines.map((line) => line.to)))
+  if (!(least <= most * (1 + SLACK))) return []
+  return preferredBetween(least, most, series).filter((value) => lines.some((line) => holds(line, value)))
 }
 
-/** True when some line of the stock holds the value; with a series, when a line of this kind spans it in that series. */
-export function inStock(value: number, kind: PassiveKind, series?: SeriesName): boolean {
-  const slack = 1e-12
-  return HOUSE_STOCK.some(
-    (line) =>
-      line.kind === kind &&
-      value >= line.from * (1 - slack) &&
-      value <= line.to * (1 + slack) &&
-      isPreferred(value, series ?? line.series),
-  )
-}
+/** True when the stores hold the value for this kind of part and, when a series is given, it belongs to that series. */
+export const inStock = (value: number, kind: PassiveKind, series?: SeriesName): boolean =>
+  (series === undefined || isPreferred(value, series)) &&
+  HOUSE_STOCK.some((line) => line.kind === kind && holds(line, value))
