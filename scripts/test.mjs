@@ -65,10 +65,10 @@ await command(async () => {
 })
 
 async function provision() {
-  await step('npm packages', () => ensurePackages(ROOT))
   // Needed with an outside DATABASE_URL too: some tests kill their server and so start one of their own.
   await step("MariaDB from Debian's packages", () => ensureSystemPackages(MARIADB))
   await step("Chromium from Debian's packages", () => ensureSystemPackages(CHROMIUM))
+  await step('npm packages', () => ensurePackages(ROOT))
 }
 
 async function passes(args) {

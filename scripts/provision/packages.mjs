@@ -1,7 +1,8 @@
 import { readFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { requireSpace } from './data-folder.mjs'
-import { runOrRefuse } from './processes.mjs'
+import { lastLines, run } from './processes.mjs'
+import { Refusal } from './report.mjs'
 
 const NEEDED_MEGABYTES = 900
 
@@ -15,12 +16,16 @@ export async function ensurePackages(root) {
   requireSpace(root, NEEDED_MEGABYTES, 'make room there')
   const npm = process.env['npm_execpath']
   const [program, first] = npm?.endsWith('.js') ? [process.execPath, [npm]] : ['npm', []]
-  await runOrRefuse(
-    'The npm packages could not be installed (is the registry within reach?)',
-    program,
-    [...first, 'ci', '--ignore-scripts', '--include=dev', '--no-audit', '--no-fund'],
-    { cwd: root },
-  )
+  const install = (...how) =>
+    run(program, [...first, ...how, '--ignore-scripts', '--include=dev', '--no-audit', '--no-fund'], { cwd: root })
+  let outcome = await install('ci')
+  // `ci` refuses a lock file without the packages that are only for other platforms, which registries may lack; this
+  // keeps to the lock file just the same for all that it names.
+  if (outcome.output.includes('EUSAGE')) outcome = await install('install', '--no-save')
+  if (outcome.code !== 0)
+    throw new Refusal(
+      `The npm packages could not be installed; is the registry within reach? It said last:\n${lastLines(outcome.output)}`,
+    )
   return 'installed'
 }
 

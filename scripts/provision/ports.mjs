@@ -22,14 +22,14 @@ export function freePort(port, host = '127.0.0.1') {
 
 /**
  * The port to serve on: the one asked for; when it is taken and only a default, the next free one.
- * @param {{ host: string, port: number, isPortGiven: boolean }} asked port 0: the system chooses
+ * @param {{ host: string, port: number, isPortGiven: boolean }} asked port 0: any free one
  * @param {(sentence: string) => void} onOther told when it is another than the default
  * @throws {Refusal} when the one asked for is taken, or the address is not this machine's
  */
 export async function servingPort({ host, port, isPortGiven }, onOther) {
-  if (port === 0) return 0
   try {
-    if ((await freePort(port, host)) !== null) return port
+    const free = await freePort(port, host)
+    if (free !== null) return free
     if (isPortGiven)
       throw new Refusal(`Port ${port} on ${host} is taken by another program; another value of PORT chooses another.`)
     for (let other = port + 1; other <= port + 50; other += 1)
@@ -37,7 +37,7 @@ export async function servingPort({ host, port, isPortGiven }, onOther) {
         onOther(`Port ${port} is taken; ${other} is used this time.`)
         return other
       }
-    return 0
+    throw new Refusal(`Ports ${port} to ${port + 50} on ${host} are all taken; PORT chooses another.`)
   } catch (error) {
     if (error instanceof Refusal) throw error
     throw new Refusal(

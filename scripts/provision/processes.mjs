@@ -3,6 +3,8 @@ import { readdirSync, readFileSync } from 'node:fs'
 import { setTimeout as pause } from 'node:timers/promises'
 import { Refusal } from './report.mjs'
 
+const LINE_MAX = 300
+
 /** @type {Set<import('node:child_process').ChildProcess>} */
 const running = new Set()
 let isEnding = false
@@ -59,7 +61,7 @@ export const lastLines = (text, count = 12) =>
     .split('\n')
     .filter((line) => line.trim() !== '')
     .slice(-count)
-    .map((line) => `    ${line}`)
+    .map((line) => `    ${line.slice(0, LINE_MAX)}`)
     .join('\n')
 
 /** @param {number} pid */

@@ -5,6 +5,7 @@ import { supervise } from './supervised-child.mjs'
 
 const LISTENS_WITHIN_MS = 60_000
 const STOP_WITHIN_MS = 10_000
+const TOLD_AFTER_MS = 15_000
 const ENDS_A_MINUTE = 5
 /** Exit codes of the server for what trying again does not mend: its configuration, its address. */
 const FINAL_CODES = [2, 3]
@@ -90,7 +91,7 @@ export async function untilServing(address, onWaiting, isGivenUp = () => false) 
   for (let startedAt = Date.now(); !isGivenUp(); await pause(100)) {
     const { status, sentence } = await readiness(address)
     if (status === 200) return
-    if (Date.now() - startedAt > 5000 && sentence !== told) {
+    if (Date.now() - startedAt > TOLD_AFTER_MS && sentence !== told) {
       onWaiting(sentence)
       told = sentence
     }

@@ -64,9 +64,10 @@ export async function startProduct(options) {
   try {
     await endFormerServer(dataDir)
     const port = await servingPort({ host, port: options.port, isPortGiven: options.isPortGiven ?? true }, onTrouble)
+    // First what may need an administrator, so that nobody waits to be told.
+    if (databaseUrl === null) await step("MariaDB from Debian's packages", () => ensureSystemPackages(MARIADB))
     await step('npm packages', () => ensurePackages(root))
     if (databaseUrl === null) {
-      await step("MariaDB from Debian's packages", () => ensureSystemPackages(MARIADB))
       requireRoomFor(dataDir)
       await step('Database', async () => {
         database = await startDatabaseServer(dataDir, { onTrouble })
@@ -98,7 +99,8 @@ export async function startProduct(options) {
     signal?.throwIfAborted()
   } catch (error) {
     await stop()
-    throw error
+    // What a broken-off step says is only that it was broken off.
+    throw signal?.aborted ? signal.reason : error
   }
   return {
     address: /** @type {string} */ (server.address),
