@@ -2,6 +2,8 @@ import { onScopeDispose } from 'vue'
 import { useRouter } from 'vue-router'
 
 const WAIT_MS = 8000
+/** The heading of a page that is there; that of one still loading is passed by. */
+const HEADING = 'main h1:not([data-loading])'
 
 /**
  * After a change of page the heading takes the focus, so that a screen reader says where one is and Tab goes on from
@@ -13,7 +15,7 @@ export function useHeadingFocus(): void {
   const stop = () => (observer?.disconnect(), clearTimeout(timer))
 
   const focusHeading = (): boolean => {
-    const heading = document.querySelector<HTMLElement>('main h1')
+    const heading = document.querySelector<HTMLElement>(HEADING)
     if (!heading) return false
     heading.tabIndex = -1
     heading.focus({ preventScroll: true })
@@ -24,10 +26,10 @@ export function useHeadingFocus(): void {
     if (failure || to.path === from.path || from.matched.length === 0) return
     stop()
     const before = document.activeElement
-    const old = document.querySelector('main h1')
+    const old = document.querySelector(HEADING)
     observer = new MutationObserver(() => {
       const isElsewhere = document.activeElement !== document.body && document.activeElement !== before
-      const heading = document.querySelector('main h1')
+      const heading = document.querySelector(HEADING)
       if (isElsewhere) stop()
       else if (heading && (heading !== old || !old?.isConnected)) if (focusHeading()) stop()
     })
