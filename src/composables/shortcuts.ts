@@ -12,6 +12,9 @@ export const SHORTCUTS = [
   { id: 'keys', keys: ['?'], does: 'Show this list', where: 'Everywhere' },
   { id: 'row-next', keys: ['ArrowDown'], does: 'Next block', where: 'On the shelf' },
   { id: 'row-previous', keys: ['ArrowUp'], does: 'Block before', where: 'On the shelf' },
+  { id: 'save', keys: ['Ctrl+S'], does: 'Save the sizing', where: 'On a block' },
+  { id: 'undo', keys: ['Ctrl+Z'], does: 'Take the last change of a value back', where: 'On a block' },
+  { id: 'redo', keys: ['Ctrl+Y'], does: 'Make it again', where: 'On a block' },
 ] as const satisfies readonly Shortcut[]
 
 export type ShortcutId = (typeof SHORTCUTS)[number]['id']

@@ -53,10 +53,7 @@ export function stateFromQuery(stage: Stage, query: URLSearchParams): { state: B
       take(readPartValue(stage, name, typed), (value) => (state.held[name] = value))
     else if (isResult) take(readTarget(stage, name, typed), (value) => (state.targets[name] = value))
     else if ((CONDITION_NAMES as string[]).includes(name))
-      take(
-        readCondition(name, name === 'temperatureKelvin' ? `${typed} K` : typed),
-        (value) => (state.conditions[name as keyof Conditions] = value),
-      )
+      take(readCondition(name, typed), (value) => (state.conditions[name as keyof Conditions] = value))
     else refused.push(name)
 
     function take<T>(reading: { ok: true; value: T } | { ok: false }, put: (value: T) => void) {

@@ -138,6 +138,9 @@ export function useBench(stage: Stage, start: BenchState = emptyState()) {
     aim: (result: string, value: number | undefined) => change('targets', result, value),
     setSeries: (part: string, series: SeriesName) => change('series', part, series),
     setCondition: (name: keyof Conditions, value: number | undefined) => change('conditions', name, value),
+    /** Marks the part or result that is being edited. */
+    use: (name: string) => void (inUse.value = name),
+    leave: (name: string) => void (inUse.value === name && (inUse.value = null)),
     setProblem(field: string, sentence: string | null) {
       if (sentence) problems[field] = sentence
       else delete problems[field]
