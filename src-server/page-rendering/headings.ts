@@ -13,7 +13,7 @@ export interface Heading {
 export function headingIds(markdown: MarkdownIt) {
   markdown.core.ruler.push('heading_ids', (state) => {
     const headings = (state.env as { headings?: Heading[] }).headings ?? []
-    const used = new Set<string>()
+    const used = new Map<string, number>()
     state.tokens.forEach((token, index) => {
       if (token.type !== 'heading_open' && token.type !== 'heading_close') return
       const level = Math.min(6, Math.max(2, Number(token.tag.slice(1))))
@@ -33,14 +33,19 @@ const textOf = (tokens: { type: string; content: string }[]) =>
     .join('')
     .slice(0, 120)
 
-function unusedId(text: string, used: Set<string>): string {
+/** An id that no heading before has; equal words are numbered on from the last, not counted through each time. */
+function unusedId(text: string, used: Map<string, number>): string {
   const words = text
     .toLowerCase()
     .normalize('NFKD')
     .replace(/[^a-z0-9]+/g, '-')
     .replace(/^-+|-+$/g, '')
-  let id = `n-${words || 'section'}`
-  for (let k = 2; used.has(id); k++) id = `n-${words || 'section'}-${k}`
-  used.add(id)
+  const base = `n-${words || 'section'}`
+  let id = base
+  for (let k = (used.get(base) ?? 0) + 1; used.has(id); k++) {
+    id = `${base}-${k + 1}`
+    used.set(base, k)
+  }
+  used.set(id, 0)
   return id
 }

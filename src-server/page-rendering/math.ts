@@ -1,5 +1,8 @@
 import type { MarkdownIt } from 'markdown-it'
 
+/** Lines of one displayed formula; further on nobody looks for its end. */
+const LINES_MAX = 100
+
 /**
  * `$…$` in a line and `$$…$$` in lines of their own. A dollar with a space inside it, or one before a digit at the
  * end, is money and stays text.
@@ -28,10 +31,11 @@ export function mathRules(markdown: MarkdownIt) {
       if (!first.startsWith('$$')) return false
       const oneLine = first.length > 4 && first.trimEnd().endsWith('$$')
       let end = startLine
+      const last = Math.min(endLine, startLine + LINES_MAX)
       if (!oneLine) {
         do end++
-        while (end < endLine && !line(end).trimEnd().endsWith('$$'))
-        if (end >= endLine) return false
+        while (end < last && !line(end).trimEnd().endsWith('$$'))
+        if (end >= last) return false
       }
       if (silent) return true
       const text = Array.from({ length: end - startLine + 1 }, (_, k) => line(startLine + k)).join('\n')
