@@ -1,5 +1,4 @@
-import { mkdtempSync, readFileSync, rmSync } from 'node:fs'
-import { tmpdir } from 'node:os'
+import { readFileSync } from 'node:fs'
 import { join } from 'node:path'
 import {
   CHROMIUM,
@@ -19,6 +18,7 @@ import {
 } from './provision/index.mjs'
 import { endRunning, run } from './provision/processes.mjs'
 import { onSignals } from './provision/signals.mjs'
+import { throwawayFolder } from './provision/throwaway-folder.mjs'
 
 const modules = join(ROOT, 'node_modules')
 const CHECKS = [
@@ -89,10 +89,10 @@ async function builds() {
 
 /** Runs vitest on a database of this run; one more failure when it fails beside its tests. */
 async function runTests(chosen) {
-  const folder = mkdtempSync(join(tmpdir(), 'poleshelf-report-'))
+  const folder = await throwawayFolder()
   const database = await startThrowawayDatabase({ outsideUrl: process.env['DATABASE_URL'], onTrouble: say })
   try {
-    const report = join(folder, 'report.json')
+    const report = join(folder.path, 'report.json')
     const reporters = ['--reporter=default', '--reporter=json', `--outputFile.json=${report}`]
     const { code } = await run(
       process.execPath,
@@ -112,7 +112,7 @@ async function runTests(chosen) {
     return { passed, failed: code !== 0 && failed === 0 ? 1 : failed }
   } finally {
     await database.stop()
-    rmSync(folder, { recursive: true, force: true })
+    folder.remove()
   }
 }
 

@@ -1,4 +1,4 @@
-import { readFileSync, writeFileSync } from 'node:fs'
+import { existsSync, readFileSync, renameSync, statSync, writeFileSync } from 'node:fs'
 import { connect } from 'node:net'
 import { setTimeout as pause } from 'node:timers/promises'
 import { asRoot, databaseUrls, ensureDatabaseFolder, LOG_SIZE } from './database-folder.mjs'
@@ -9,6 +9,7 @@ import { supervise } from './supervised-child.mjs'
 import { programPath } from './system-packages.mjs'
 
 const READY_WITHIN_MS = 90_000
+const LOG_MAX_BYTES = 5_000_000
 const STOP_WITHIN_MS = 60_000
 const SQL_MODE =
   'STRICT_ALL_TABLES,ONLY_FULL_GROUP_BY,NO_ZERO_IN_DATE,NO_ZERO_DATE,ERROR_FOR_DIVISION_BY_ZERO,NO_ENGINE_SUBSTITUTION'
@@ -47,6 +48,7 @@ const serverArguments = (folder, port) => [
 export async function startDatabaseServer(parent, { isThrowaway = false, onTrouble = say } = {}) {
   const folder = await ensureDatabaseFolder(parent, { isThrowaway })
   for (const pid of processesWithArgument(`--datadir=${folder.data}`)) await stopProcess(pid, STOP_WITHIN_MS)
+  setAsideLongLog(folder.log)
   for (let attempt = 1; ; attempt += 1) {
     const port = await choosePort(folder.portFile)
     const server = supervise({
@@ -115,6 +117,11 @@ export function isGreeted(port) {
     socket.once('close', () => done(false))
     socket.once('data', (bytes) => answer(bytes[4] === 10))
   })
+}
+
+/** Keeps one former log; mariadbd itself only ever adds to it. */
+function setAsideLongLog(file) {
+  if (existsSync(file) && statSync(file).size > LOG_MAX_BYTES) renameSync(file, `${file}.old`)
 }
 
 function readLog(file) {

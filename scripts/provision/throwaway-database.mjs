@@ -1,11 +1,6 @@
 import { randomBytes } from 'node:crypto'
-import { mkdtempSync, readdirSync, rmSync } from 'node:fs'
-import { tmpdir } from 'node:os'
-import { join } from 'node:path'
 import { startDatabaseServer } from './database-server.mjs'
-import { isAlive, processesWithArgument, stopProcess } from './processes.mjs'
-
-const FOLDER = /^poleshelf-throwaway-(\d+)-\w+$/
+import { throwawayFolder } from './throwaway-folder.mjs'
 
 /**
  * A MariaDB server for one run, gone with all it holds when it is stopped; or, given an outside server's address,
@@ -22,11 +17,9 @@ export async function startThrowawayDatabase({ outsideUrl, onTrouble = () => {} 
     await makeDatabase(url.href, prefix)
     return { url: url.href, prefix, pid: null, stop: () => dropDatabases(url.href, prefix) }
   }
-  await sweep()
-  const folder = mkdtempSync(join(tmpdir(), `poleshelf-throwaway-${process.pid}-`))
-  const remove = () => rmSync(folder, { recursive: true, force: true })
+  const folder = await throwawayFolder()
   try {
-    const server = await startDatabaseServer(folder, { isThrowaway: true, onTrouble })
+    const server = await startDatabaseServer(folder.path, { isThrowaway: true, onTrouble })
     const url = new URL(server.rootUrl ?? '')
     url.pathname = `/${prefix}`
     await makeDatabase(url.href, prefix)
@@ -38,24 +31,12 @@ export async function startThrowawayDatabase({ outsideUrl, onTrouble = () => {} 
       },
       async stop() {
         await server.stop()
-        remove()
+        folder.remove()
       },
     }
   } catch (error) {
-    remove()
+    folder.remove()
     throw error
-  }
-}
-
-/** Ends and removes what runs left behind that were killed. */
-async function sweep() {
-  for (const name of readdirSync(tmpdir())) {
-    const owner = FOLDER.exec(name)?.[1]
-    if (owner === undefined || isAlive(Number(owner))) continue
-    const folder = join(tmpdir(), name)
-    for (const pid of processesWithArgument(`--datadir=${join(folder, 'database', 'data')}`))
-      await stopProcess(pid, 10_000)
-    rmSync(folder, { recursive: true, force: true })
   }
 }
 
