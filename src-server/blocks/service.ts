@@ -3,7 +3,7 @@ import { ProblemError } from '#shared/problems'
 import { writePage } from '#shared/page-source/write-page'
 import type { Database } from '../database'
 import type { PageRenderer } from '../page-rendering'
-import { explainMatch, searchRevisions, searchTokens, suggestion, wordsOf } from '../search'
+import { directness, explainMatch, searchRevisions, searchTokens, suggestion, wordsOf } from '../search'
 import { narrow, narrowingOf } from './narrowing'
 import type { BlockRepository, RevisionLineRow, WholeRevision } from './repository'
 import { stageKeeper } from './stage-keeper'
@@ -22,16 +22,29 @@ export function blockService({ database, blocks, renderPage }: Needs) {
   const { queries } = database
   const stageOf = stageKeeper()
 
-  const revisionOf = async (code: string, number?: number): Promise<WholeRevision> => {
+  const keptRevision = async (code: string, number?: number): Promise<WholeRevision> => {
     const found =
       number === undefined ? await blocks.current(queries, code) : await blocks.revision(queries, code, number)
     if (!found) throw nothingHere()
     return found
   }
 
+  const revisionOf = async (code: string, number?: number): Promise<WholeRevision> => {
+    const found = await keptRevision(code, number)
+    if (found.status === 'returned') throw nothingHere()
+    return found
+  }
+
   return {
-    /** A revision as it is kept. @throws {ProblemError} 'not-found' */
+    /** A revision that may be looked up: not one that was returned. @throws {ProblemError} 'not-found' */
     revisionOf,
+    /** A revision whatever became of it: for the sizings that were saved on it. @throws {ProblemError} 'not-found' */
+    keptRevision,
+    /** Number of the approved revision of a block, null while it has none. */
+    async approvedNumber(code: string): Promise<number | null> {
+      const current = await blocks.current(queries, code)
+      return current?.status === 'approved' ? current.number : null
+    },
     stageOf,
 
     /** The shelf: approved blocks, or what is in review when that is asked for; searched and narrowed. */
@@ -47,7 +60,11 @@ export function blockService({ database, blocks, renderPage }: Needs) {
             tokens,
           )
         : null
-      const searched = found ? found.map((id) => all.find((row) => row.id === id)!) : all
+      const searched = found
+        ? found
+            .map((id) => all.find((row) => row.id === id)!)
+            .sort((a, b) => directness(a, tokens) - directness(b, tokens))
+        : all
       const rows = narrow(searched, query)
       const shown = rows.slice(0, query.limit)
       const notes = tokens.length

@@ -1,6 +1,6 @@
 import { nearName } from '#shared/formula/near-name'
 import type { ShelfRow } from '#shared/contracts/blocks'
-import { fold } from './words'
+import { fold, searchTokens } from './words'
 
 /** The texts of one block that are searched, with what each is called when it is why the block matched. */
 export interface SearchTexts {
@@ -39,6 +39,18 @@ export function explainMatch(texts: SearchTexts, tokens: string[]): NonNullable<
     }
   }
   return { words: tokens, in: 'names and tags', excerpt: '' }
+}
+
+/**
+ * How directly a block was named: 0 by its code, 1 by the beginning of its title, 2 by an alias, 3 by words somewhere.
+ * The index alone would put a page that mentions another one above it.
+ */
+export function directness(block: { code: string; title: string; aliases: string[] }, tokens: string[]): number {
+  const phrase = tokens.join(' ')
+  const plain = (text: string) => searchTokens(text).join(' ')
+  if (plain(block.code) === phrase) return 0
+  if (plain(block.title).startsWith(phrase)) return 1
+  return block.aliases.some((alias) => plain(alias) === phrase) ? 2 : 3
 }
 
 /** Place where a word begins with the token, or −1. */

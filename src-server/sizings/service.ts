@@ -38,16 +38,16 @@ export function sizingService({ database, blocks, sizings, baseUrl, now }: Needs
   const open = async (number: number): Promise<Sizing> => {
     const row = await sizings.byNumber(queries, number)
     if (!row) throw new ProblemError('not-found', `There is no sizing S-${number} here.`)
-    const revision = await blocks.revisionOf(row.code, row.revision)
+    const revision = await blocks.keptRevision(row.code, row.revision)
     const { page } = blocks.stageOf(revision)
-    const current = await blocks.revisionOf(row.code)
+    const approved = await blocks.approvedNumber(row.code)
     const { sizing } = row
     return {
       number: `S-${sizing.number}`,
       titleBlock: sizing.titleBlock,
       statusNow: row.statusNow,
       withdrawnReason: row.withdrawnReason,
-      newerRevision: current.status === 'approved' && current.number > row.revision ? current.number : null,
+      newerRevision: approved !== null && approved > row.revision ? approved : null,
       asked: sizing.asked,
       outcome: sizing.outcome,
       conditions: sizing.conditions,
@@ -156,7 +156,7 @@ export function sizingService({ database, blocks, sizings, baseUrl, now }: Needs
     /** What today's engine gives differently at the stored values. Nothing stored is changed. */
     async checkAgain(number: number): Promise<CheckAgain> {
       const stored = await open(number)
-      const revision = await blocks.revisionOf(stored.titleBlock.code, stored.titleBlock.revision)
+      const revision = await blocks.keptRevision(stored.titleBlock.code, stored.titleBlock.revision)
       const { stage } = blocks.stageOf(revision)
       const outcome = evaluateStage(stage, {
         held: stored.outcome.values,
