@@ -7,8 +7,8 @@ type Handler = (event: KeyboardEvent) => void | false
 const handlers = new Map<ShortcutId, Handler[]>()
 
 /**
- * Acts on a shortcut of the table while the component lives; the newest handler has it. A handler that returns false
- * leaves the key to the page.
+ * Acts on a shortcut of the table while the component lives; the newest handler is asked first. One that
+ * returns false leaves the key to the next, and in the end to the page.
  */
 export function useShortcut(id: ShortcutId, handler: Handler): void {
   handlers.set(id, [...(handlers.get(id) ?? []), handler])
@@ -30,8 +30,8 @@ export function useShortcutKeys(): void {
     if (isPlain && isInField(event)) return
     if (isPlain && isSingleKey(pressed) && !settings.singleKeys) return
     const shortcut = SHORTCUTS.find(({ keys }) => (keys as readonly string[]).includes(pressed))
-    const handler = shortcut && handlers.get(shortcut.id)?.at(-1)
-    if (handler && handler(event) !== false) event.preventDefault()
+    const inTurn = shortcut ? [...(handlers.get(shortcut.id) ?? [])].reverse() : []
+    if (inTurn.some((handler) => handler(event) !== false)) event.preventDefault()
   }
   document.addEventListener('keydown', listen)
   onScopeDispose(() => document.removeEventListener('keydown', listen))
