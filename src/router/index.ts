@@ -1,5 +1,6 @@
 import { createRouter, createWebHistory, type RouteLocationNormalized } from 'vue-router'
 import { useSession } from '../stores/session'
+import { ownPath } from './own-path'
 import { isMissingFile, pageCameUp, reloadOnce } from './new-version'
 import { routes } from './routes'
 
@@ -17,9 +18,9 @@ export default () => {
 
   router.beforeEach(async (to) => {
     const session = useSession()
-    if (session.isSignedIn) return true
-    const isSignedIn = await session.settle().catch(() => null)
-    if (to.meta.isPublic || isSignedIn) return true
+    const isSignedIn = to.meta.isPublic && session.isSettled ? session.isSignedIn : await settled(session)
+    if (isSignedIn && to.path === '/sign-in') return ownPath(to.query.next)
+    if (isSignedIn || to.meta.isPublic) return true
     // Without an answer nobody knows: the sign-in page says what is the matter.
     return { path: '/sign-in', query: nextOf(to) }
   })
@@ -31,5 +32,8 @@ export default () => {
   })
   return router
 }
+
+/** Whether somebody is signed in; null while the server does not answer. */
+const settled = (session: ReturnType<typeof useSession>) => session.settle().catch(() => null)
 
 const nextOf = (to: RouteLocationNormalized) => (to.fullPath === '/' ? {} : { next: to.fullPath })

@@ -7,21 +7,25 @@ import { fetchMe, signIn as sendSignIn, signOut as sendSignOut } from '../querie
 /** Who is signed in, and the sign-in over the page when a session has ended meanwhile. */
 export const useSession = defineStore('session', () => {
   const me = ref<Me | null>(null)
+  /** Whether the server has said who is signed in, be it nobody. */
+  const isSettled = ref(false)
   const isAsking = ref(false)
   let answerAsked: ((signedIn: boolean) => void) | null = null
   let asked: Promise<boolean> | null = null
 
   const isSignedIn = computed(() => me.value !== null)
 
-  /** Whether somebody is signed in, asked of the server once. @throws {ApiProblem} when it does not answer */
+  /** Whether somebody is signed in, asked of the server unless it is known that somebody is. @throws {ApiProblem} when it does not answer */
   async function settle(): Promise<boolean> {
     if (me.value) return true
     try {
       me.value = await fetchMe()
+      isSettled.value = true
       return true
     } catch (error) {
-      if (error instanceof ApiProblem && error.code === 'not-signed-in') return false
-      throw error
+      if (!(error instanceof ApiProblem) || error.code !== 'not-signed-in') throw error
+      isSettled.value = true
+      return false
     }
   }
 
@@ -53,5 +57,5 @@ export const useSession = defineStore('session', () => {
     asked = null
   }
 
-  return { me, isSignedIn, isAsking, settle, signIn, signOut, ask, giveUp: () => closeDialog(false) }
+  return { me, isSignedIn, isSettled, isAsking, settle, signIn, signOut, ask, giveUp: () => closeDialog(false) }
 })
