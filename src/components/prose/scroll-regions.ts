@@ -14,16 +14,16 @@ export function keepWideInside(root: HTMLElement): () => void {
   }
   const frames = root.querySelectorAll<HTMLElement>('.scrolls, pre')
   const observer = new ResizeObserver((changes) => {
-    for (const { target } of changes) markAsRegion(target as HTMLElement)
+    for (const { target } of changes) nameIfWide(target as HTMLElement)
   })
   for (const frame of frames) observer.observe(frame)
   return () => observer.disconnect()
 }
 
-function markAsRegion(frame: HTMLElement): void {
+function nameIfWide(frame: HTMLElement): void {
   if (frame.scrollWidth > frame.clientWidth) {
     frame.tabIndex = 0
-    frame.setAttribute('role', 'region')
+    frame.setAttribute('role', 'group')
     frame.setAttribute('aria-label', frame.matches('pre') ? 'Code, scrolls sideways' : 'Table, scrolls sideways')
   } else for (const name of ['tabindex', 'role', 'aria-label']) frame.removeAttribute(name)
 }
