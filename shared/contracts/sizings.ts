@@ -7,6 +7,14 @@ import { BlockCode, Instant, RevisionNumber, RevisionStatus, SizingNumber } from
 export const NOTE_MAX = 2000
 export const REASON_MAX = 500
 
+/** Half a surrogate pair cannot be stored as it was typed. */
+const wholeText = (most: number) =>
+  z
+    .string()
+    .trim()
+    .max(most)
+    .regex(/^\P{Surrogate}*$/u, 'This text holds half a character; type it again.')
+
 /** What the browser sends; the server computes its own results from it. */
 export const SaveSizing = z.strictObject({
   block: BlockCode,
@@ -16,9 +24,9 @@ export const SaveSizing = z.strictObject({
   conditions: z.record(z.string().max(40), Quantity).default({}),
   series: z.record(z.string().max(40), z.string().max(8)).default({}),
   goodEnough: z.number().min(0).max(0.5).default(0),
-  note: z.string().trim().max(NOTE_MAX).default(''),
+  note: wholeText(NOTE_MAX).default(''),
   /** Needed when a limit is not kept. */
-  reason: z.string().trim().max(REASON_MAX).default(''),
+  reason: wholeText(REASON_MAX).default(''),
 })
 export type SaveSizing = z.input<typeof SaveSizing>
 
@@ -66,6 +74,8 @@ export const SizingLine = z.strictObject({
   revision: z.number().int(),
   statusNow: RevisionStatus,
   targets: z.record(z.string(), z.number()),
+  /** Units of the targets. */
+  units: z.record(z.string(), z.string()).default({}),
   note: z.string(),
   savedBy: z.string(),
   savedAt: Instant,
