@@ -1,4 +1,4 @@
-import { LineCounter, isMap, isScalar, isSeq, parseDocument } from 'yaml'
+import { LineCounter, isMap, isScalar, isSeq, parseDocument, visit, type Document } from 'yaml'
 import type { Problem, Reading } from '../problems'
 
 export type Path = (string | number)[]
@@ -32,6 +32,11 @@ export function readYaml(text: string, firstLine = 1): Reading<PositionedYaml> {
     const at = lines.linePos(first.pos[0])
     return fail(`The YAML cannot be read here: ${firstSentence(first.message)}`, at.line, at.col)
   }
+  const reserved = reservedKey(document)
+  if (reserved !== null) {
+    const at = lines.linePos(reserved)
+    return fail('The name __proto__ cannot be used.', at.line, at.col)
+  }
   let value: unknown
   try {
     value = document.toJS({ maxAliasCount: 20 })
@@ -63,6 +68,19 @@ const offsetOf = (node: unknown): number | undefined => {
   if (!range) return undefined
   const quoted = isScalar(node) && (node.type === 'QUOTE_DOUBLE' || node.type === 'QUOTE_SINGLE')
   return range[0] + (quoted ? 1 : 0)
+}
+
+/** Place of a key that means something to the language we are written in; others are plain names. */
+function reservedKey(document: Document): number | null {
+  let at: number | null = null
+  visit(document, {
+    Pair(_, { key }) {
+      if (!isScalar(key) || key.value !== '__proto__') return undefined
+      at = offsetOf(key) ?? 0
+      return visit.BREAK
+    },
+  })
+  return at
 }
 
 const firstSentence = (message: string) => {
