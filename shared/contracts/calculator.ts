@@ -3,6 +3,9 @@ import { OutputName, PartRef, ResultName } from './names'
 
 const FormulaText = z.union([z.string().min(1).max(2000), z.number()]).transform(String)
 const QuantityText = z.union([z.string().min(1).max(60), z.number()]).transform(String)
+const PARTS_MAX = 400
+const RESULTS_MAX = 100
+const atMost = (most: number) => (entries: object) => Object.keys(entries).length <= most
 const Sentence = z.string().min(1).max(500)
 
 export const PART_ENTRY_KINDS = ['resistor', 'capacitor', 'inductor', 'opamp'] as const
@@ -75,8 +78,11 @@ export const PlotRange = z.strictObject({
 
 /** The `calculator` fence after YAML. */
 export const CalculatorSource = z.strictObject({
-  parts: z.record(PartRef, PartEntry),
-  results: z.record(ResultName, ResultEntry).default({}),
+  parts: z.record(PartRef, PartEntry).refine(atMost(PARTS_MAX), `A calculator has at most ${PARTS_MAX} parts.`),
+  results: z
+    .record(ResultName, ResultEntry)
+    .refine(atMost(RESULTS_MAX), `A calculator has at most ${RESULTS_MAX} results.`)
+    .default({}),
   response: z.union([FormulaText, z.record(OutputName, FormulaText)]).optional(),
   sizing: SizingRecipe.optional(),
   limits: z.array(LimitEntry).max(40).default([]),
