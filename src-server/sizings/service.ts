@@ -145,6 +145,11 @@ export function sizingService({ database, blocks, sizings, baseUrl, now }: Needs
               result.target === undefined ? [] : [[name, result.target]],
             ),
           ),
+          units: Object.fromEntries(
+            Object.entries(row.outcome.results).flatMap(([name, result]) =>
+              result.target === undefined ? [] : [[name, result.unit]],
+            ),
+          ),
           note: row.note,
           savedBy: row.savedByName,
           savedAt: row.savedAt.toISOString(),

@@ -1,13 +1,30 @@
-import { useMutation, useQuery, useQueryCache } from '@pinia/colada'
+import { useInfiniteQuery, useMutation, useQuery, useQueryCache } from '@pinia/colada'
 import { toValue, type MaybeRefOrGetter } from 'vue'
 import { CheckAgain, Sizing, SizingList, type SaveSizing } from '#shared/contracts/sizings'
 import { call } from './api'
 
-/** Sizings saved so far, newest first. */
-export const useSizings = () =>
-  useQuery({
-    key: ['sizings', 'list'],
-    query: ({ signal }) => call('/api/sizings', { answer: SizingList, signal }),
+/** Which sizings a list shows; everyone's of every block when nothing is chosen. */
+export interface SizingChoices {
+  block?: string
+  isMine?: boolean
+}
+
+const PAGE_ROWS = 50
+
+/** Sizings saved so far, newest first, a page at a time. */
+export const useSizings = (choices: MaybeRefOrGetter<SizingChoices> = {}) =>
+  useInfiniteQuery({
+    key: () => ['sizings', 'list', { ...toValue(choices) }],
+    query: ({ pageParam, signal }) => {
+      const { block, isMine } = toValue(choices)
+      return call('/api/sizings', {
+        query: { limit: PAGE_ROWS, before: pageParam, block, mine: isMine ? 'true' : undefined },
+        answer: SizingList,
+        signal,
+      })
+    },
+    initialPageParam: undefined as string | undefined,
+    getNextPageParam: (last) => last.next,
     staleTime: 10_000,
   })
 

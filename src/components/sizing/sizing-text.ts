@@ -10,7 +10,8 @@ const ZERO_CELSIUS_KELVIN = 273.15
 
 /** What surrounded the stage, each condition with its words; source and load are named also when they are ideal. */
 export function conditionWords(conditions: Conditions, text: Text): { label: string; value: string }[] {
-  const { sourceOhm, loadOhm, loadFarad, supplyPlusVolt, supplyMinusVolt, levelVoltPeak, temperatureKelvin } = conditions
+  const { sourceOhm, loadOhm, loadFarad, supplyPlusVolt, supplyMinusVolt, levelVoltPeak, temperatureKelvin } =
+    conditions
   const loads = [loadOhm !== undefined && text(loadOhm, 'Ω'), loadFarad !== undefined && text(loadFarad, 'F')]
   const supply =
     supplyPlusVolt === undefined ? null : formatSupply({ plusVolt: supplyPlusVolt, minusVolt: supplyMinusVolt ?? 0 })
