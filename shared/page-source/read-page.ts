@@ -16,6 +16,13 @@ export interface BlockLink {
   column: number
 }
 
+/** A name in the notes with its place in the page. */
+export interface NamedPlace {
+  name: string
+  line: number
+  column: number
+}
+
 /** A block page as written, taken apart; the notes stay Markdown. */
 export interface PageSource {
   metadata: FrontMatter
@@ -27,7 +34,9 @@ export interface PageSource {
   calculator: Fence
   limits: Fence | null
   /** Names of `:value[name]`, with their places. */
-  values: { name: string; line: number; column: number }[]
+  values: NamedPlace[]
+  /** Names of `:formula[name]`, likewise. */
+  formulas: NamedPlace[]
   links: BlockLink[]
 }
 
@@ -61,10 +70,10 @@ export function readPage(text: string): Reading<PageSource> {
   if (!calculator) complain(end + 2, 1, 'The page has no calculator: begin one with three backquotes and “calculator”.')
   if (problems.length || !metadata || !circuit || !calculator)
     return { ok: false, problems: problems as [Problem, ...Problem[]] }
-  const { values, links } = readReferences(body, end + 2)
+  const { values, formulas, links } = readReferences(body, end + 2)
   return {
     ok: true,
-    value: { metadata, body: body.join('\n'), bodyLine: end + 2, circuit, calculator, limits, values, links },
+    value: { metadata, body: body.join('\n'), bodyLine: end + 2, circuit, calculator, limits, values, formulas, links },
   }
 }
 
@@ -117,12 +126,13 @@ function readFences(
   return fences
 }
 
-const VALUE = /:value\[([^\]\n]{1,40})\]/g
+const DIRECTIVE = /:(value|formula)\[([^\]\n]{1,40})\]/g
 const LINK = /\]\(block:([a-z0-9-]{1,40})(?:@(\d{1,7}))?\)/gi
 
-/** Live values and links to blocks in the notes, outside fences and code. */
+/** Live values, formulas and links to blocks in the notes, outside fences and code. */
 function readReferences(lines: string[], firstLine: number) {
-  const values: PageSource['values'] = []
+  const values: NamedPlace[] = []
+  const formulas: NamedPlace[] = []
   const links: BlockLink[] = []
   let fence: string | null = null
   lines.forEach((line, k) => {
@@ -136,8 +146,10 @@ function readReferences(lines: string[], firstLine: number) {
       return
     }
     const prose = line.replace(/`[^`]*`/g, (code) => ' '.repeat(code.length))
-    for (const match of prose.matchAll(VALUE))
-      values.push({ name: match[1]!, line: firstLine + k, column: match.index + 1 })
+    for (const match of prose.matchAll(DIRECTIVE)) {
+      const list = match[1] === 'value' ? values : formulas
+      list.push({ name: match[2]!, line: firstLine + k, column: match.index + 1 })
+    }
     for (const match of prose.matchAll(LINK))
       links.push({
         code: match[1]!.toLowerCase(),
@@ -146,5 +158,5 @@ function readReferences(lines: string[], firstLine: number) {
         column: match.index + 3,
       })
   })
-  return { values, links }
+  return { values, formulas, links }
 }

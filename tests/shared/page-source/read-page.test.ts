@@ -104,6 +104,9 @@ describe('readBlock', () => {
   })
 
   it.each<[string, string, number, number]>([
+    ['an unknown formula', page('x', 'a :formula[f_d]'), 12, 3],
+    ['a formula of a part', page('x', ':formula[R1]'), 12, 1],
+    ['a response that is not there', page('x', ':formula[response]').replace(/response: .*\n/, ''), 12, 1],
     ['an unknown live value', page('x', 'a :value[f_d]'), 12, 3],
     ['an error in the circuit', page('x').replace('ground 7,6', 'ground 7,6 8'), 18, 12],
     ['a part without an entry', page('x').replace('  C1: { default: 10n }\n', ''), 26, 3],
