@@ -2,6 +2,7 @@ import { ProblemError } from '../problems'
 import { slotFinder } from './compile'
 import type { Formula } from './parse'
 import type { Tree } from './tree'
+import { wholeExponent } from './tree'
 import type { FunctionName } from './vocabulary'
 import { CONSTANTS } from './vocabulary'
 
@@ -17,7 +18,7 @@ type Run = (values: Float64Array, sRe: number, sIm: number) => void
  * @throws {ProblemError} 'formula-not-read' when a name is not in the vector or a power is not a whole number
  */
 export function compileComplexFormula(formula: Formula, names: readonly string[]): EvaluateComplex {
-  const builder = new ComplexBuilder(names)
+  const builder = new ComplexBuilder(formula.text, names)
   const top = builder.build(formula.tree)
   const re = Float64Array.from(builder.re)
   const im = Float64Array.from(builder.im)
@@ -39,8 +40,8 @@ class ComplexBuilder {
   readonly im: number[] = []
   private readonly slotOf
 
-  constructor(names: readonly string[]) {
-    this.slotOf = slotFinder(names)
+  constructor(text: string, names: readonly string[]) {
+    this.slotOf = slotFinder(text, names)
   }
 
   private register(re = 0, im = 0): number {
@@ -126,13 +127,8 @@ class ComplexBuilder {
   }
 
   private power(base: Tree, exponent: Tree): Built {
-    const n =
-      exponent.type === 'minus' && exponent.arg.type === 'number'
-        ? -exponent.arg.value
-        : exponent.type === 'number'
-          ? exponent.value
-          : NaN
-    if (!Number.isInteger(n) || Math.abs(n) > 20)
+    const n = wholeExponent(exponent)
+    if (n === null)
       throw new ProblemError('formula-not-read', 'A power in a response is a whole number up to 20, such as s^2.', {
         line: 1,
         column: 1,
@@ -141,9 +137,11 @@ class ComplexBuilder {
       let x = 1
       let y = 0
       for (let k = 0; k < Math.abs(n); k++) [x, y] = [x * re[a]! - y * im[a]!, x * im[a]! + y * re[a]!]
-      if (n < 0) [x, y] = reciprocal(x, y)
-      re[to] = x
-      im[to] = y
+      if (n < 0) divide(re, im, to, 1, 0, x, y)
+      else {
+        re[to] = x
+        im[to] = y
+      }
     })
   }
 
@@ -175,9 +173,26 @@ class ComplexBuilder {
 
 type BinaryWork = (re: Float64Array, im: Float64Array, to: number, a: number, b: number) => void
 
-const reciprocal = (x: number, y: number): [number, number] => {
-  const size = x * x + y * y
-  return [x / size, -y / size]
+/**
+ * Quotient of two complex numbers, scaled so that squares neither overflow nor vanish. Division by zero gives a real
+ * infinity, so that 1/(s*C) at s = 0 is an open circuit.
+ * Source: R. L. Smith, Algorithm 116, Comm. ACM 5 (1962) 435.
+ */
+function divide(re: Float64Array, im: Float64Array, to: number, a: number, b: number, c: number, d: number) {
+  if (c === 0 && d === 0) {
+    re[to] = a === 0 && b === 0 ? NaN : Infinity
+    im[to] = 0
+  } else if (Math.abs(c) >= Math.abs(d)) {
+    const ratio = d / c
+    const size = c + d * ratio
+    re[to] = (a + b * ratio) / size
+    im[to] = (b - a * ratio) / size
+  } else {
+    const ratio = c / d
+    const size = c * ratio + d
+    re[to] = (a * ratio + b) / size
+    im[to] = (b * ratio - a) / size
+  }
 }
 
 const BINARY: Record<'+' | '-' | '*' | '/', BinaryWork> = {
@@ -194,10 +209,5 @@ const BINARY: Record<'+' | '-' | '*' | '/', BinaryWork> = {
     im[to] = re[a]! * im[b]! + im[a]! * re[b]!
     re[to] = x
   },
-  '/': (re, im, to, a, b) => {
-    const size = re[b]! * re[b]! + im[b]! * im[b]!
-    const x = (re[a]! * re[b]! + im[a]! * im[b]!) / size
-    im[to] = (im[a]! * re[b]! - re[a]! * im[b]!) / size
-    re[to] = x
-  },
+  '/': (re, im, to, a, b) => divide(re, im, to, re[a]!, im[a]!, re[b]!, im[b]!),
 }

@@ -1,7 +1,8 @@
 import { ProblemError } from '../problems'
 import { nearName } from './near-name'
 import type { Formula } from './parse'
-import type { Tree } from './tree'
+import { placeAt } from './place'
+import type { ComparisonOperator, Tree } from './tree'
 import type { FunctionName, OpampDatum } from './vocabulary'
 import { CONSTANTS } from './vocabulary'
 
@@ -17,19 +18,26 @@ export type OpampData = (datum: OpampDatum, ref: string) => number | undefined
  * @throws {ProblemError} 'formula-not-read' when a name is not in the vector
  */
 export function compileFormula(formula: Formula, names: readonly string[], opamps?: OpampData): Evaluate {
-  return real(formula.tree, slotFinder(names), opamps)
+  return real(formula.tree, slotFinder(formula.text, names), opamps)
 }
 
-/** Compiles a condition. A comparison with NaN is false, and so is `not` of a formula that cannot be evaluated. */
+/**
+ * Compiles a condition. A comparison with a value that is not defined holds in neither direction, so `not` of it is
+ * false too.
+ * @throws {ProblemError} 'formula-not-read' when a name is not in the vector
+ */
 export function compileCondition(
   formula: Formula,
   names: readonly string[],
   opamps?: OpampData,
 ): (values: Float64Array) => boolean {
-  return truth(formula.tree, slotFinder(names), opamps)
+  return truth(formula.tree, slotFinder(formula.text, names), opamps, false)
 }
 
-/** Evaluates once, by names. */
+/**
+ * Evaluates once, by names.
+ * @throws {ProblemError} 'formula-not-read' when a name has no value
+ */
 export function evaluateOnce(formula: Formula, values: Readonly<Record<string, number>>): number {
   const names = Object.keys(values)
   return compileFormula(formula, names)(Float64Array.from(names, (name) => values[name]!))
@@ -37,19 +45,14 @@ export function evaluateOnce(formula: Formula, values: Readonly<Record<string, n
 
 type SlotOf = (name: string, column: number) => number
 
-export function slotFinder(names: readonly string[]): SlotOf {
+/** Finds the place of a name in the vector, or says which name is near. */
+export function slotFinder(text: string, names: readonly string[]): SlotOf {
   return (name, column) => {
     const slot = names.indexOf(name)
     if (slot >= 0) return slot
     const near = nearName(name, names)
-    throw new ProblemError(
-      'formula-not-read',
-      `“${name}” is not a part, result or condition here.${near ? ` Did you mean ${near}?` : ''}`,
-      {
-        line: 1,
-        column,
-      },
-    )
+    const detail = `“${name}” is not a part, result or condition here.${near ? ` Did you mean ${near}?` : ''}`
+    throw new ProblemError('formula-not-read', detail, placeAt(text, column))
   }
 }
 
@@ -60,8 +63,10 @@ function real(tree: Tree, slotOf: SlotOf, opamps?: OpampData): Evaluate {
       return () => value
     }
     case 'name': {
-      const constant = (CONSTANTS as Record<string, number>)[tree.name]
-      if (constant !== undefined && Object.hasOwn(CONSTANTS, tree.name)) return () => constant
+      if (Object.hasOwn(CONSTANTS, tree.name)) {
+        const constant = CONSTANTS[tree.name as keyof typeof CONSTANTS]
+        return () => constant
+      }
       const slot = slotOf(tree.name, tree.column)
       return (v) => v[slot]!
     }
@@ -122,33 +127,54 @@ function call(name: FunctionName, args: Evaluate[]): Evaluate {
     case 'atan2':
       return (v) => Math.atan2(a(v), b(v))
     case 'min':
-      return (v) => Math.min(...args.map((arg) => arg(v)))
+      return folded(args, (a, b) => Math.min(a, b))
     case 'max':
-      return (v) => Math.max(...args.map((arg) => arg(v)))
-    case 'par':
-      return (v) => 1 / args.reduce((sum, arg) => sum + 1 / arg(v), 0)
+      return folded(args, (a, b) => Math.max(a, b))
     case 'ser':
-      return (v) => args.reduce((sum, arg) => sum + arg(v), 0)
+      return folded(args, (a, b) => a + b)
+    case 'par': {
+      const admittance = folded(
+        args.map((arg) => (v: Float64Array) => 1 / arg(v)),
+        (a, b) => a + b,
+      )
+      return (v) => 1 / admittance(v)
+    }
     case 'dB':
       return (v) => 20 * Math.log10(Math.abs(a(v)))
   }
 }
 
-function truth(tree: Tree, slotOf: SlotOf, opamps?: OpampData): (values: Float64Array) => boolean {
+/** Arguments taken together two by two, without a list on every call. */
+const folded = (args: Evaluate[], join: (a: number, b: number) => number): Evaluate =>
+  args.reduce((before, arg) => (v) => join(before(v), arg(v)))
+
+const OPPOSITE: Record<ComparisonOperator, ComparisonOperator> = {
+  '<': '>=',
+  '<=': '>',
+  '>': '<=',
+  '>=': '<',
+  '==': '!=',
+  '!=': '==',
+}
+
+/** @param negated the opposite is wanted; `not` is carried down to the comparisons, where NaN fails both ways */
+function truth(
+  tree: Tree,
+  slotOf: SlotOf,
+  opamps: OpampData | undefined,
+  negated: boolean,
+): (v: Float64Array) => boolean {
+  if (tree.type === 'not') return truth(tree.arg, slotOf, opamps, !negated)
   if (tree.type === 'logic') {
-    const left = truth(tree.left, slotOf, opamps)
-    const right = truth(tree.right, slotOf, opamps)
-    return tree.operator === 'and' ? (v) => left(v) && right(v) : (v) => left(v) || right(v)
-  }
-  if (tree.type === 'not') {
-    const arg = truth(tree.arg, slotOf, opamps)
-    return (v) => !arg(v)
+    const left = truth(tree.left, slotOf, opamps, negated)
+    const right = truth(tree.right, slotOf, opamps, negated)
+    return (tree.operator === 'and') !== negated ? (v) => left(v) && right(v) : (v) => left(v) || right(v)
   }
   if (tree.type !== 'comparison')
     throw new ProblemError('formula-not-read', 'A condition compares: f_c > 200 kHz.', { line: 1, column: 1 })
   const a = real(tree.left, slotOf, opamps)
   const b = real(tree.right, slotOf, opamps)
-  switch (tree.operator) {
+  switch (negated ? OPPOSITE[tree.operator] : tree.operator) {
     case '<':
       return (v) => a(v) < b(v)
     case '<=':
@@ -160,6 +186,10 @@ function truth(tree: Tree, slotOf: SlotOf, opamps?: OpampData): (values: Float64
     case '==':
       return (v) => a(v) === b(v)
     case '!=':
-      return (v) => a(v) < b(v) || a(v) > b(v)
+      return (v) => {
+        const x = a(v)
+        const y = b(v)
+        return x < y || x > y
+      }
   }
 }

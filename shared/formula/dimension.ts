@@ -3,6 +3,7 @@ import { unread } from '../problems'
 import type { Unit } from '../quantities/unit'
 import { compileFormula } from './compile'
 import type { Formula } from './parse'
+import { placeAt } from './place'
 import type { Tree } from './tree'
 import { columnOf } from './tree'
 import { CONSTANTS, OPAMP_DATA } from './vocabulary'
@@ -10,7 +11,13 @@ import { CONSTANTS, OPAMP_DATA } from './vocabulary'
 /** Exponents of volt, ampere, second and kelvin; `any` for 0 and for a literal with a prefix but no unit. */
 export type Dimension = { volt: number; ampere: number; second: number; kelvin: number } | 'any'
 
-const of = (volt = 0, ampere = 0, second = 0, kelvin = 0): Dimension => ({ volt, ampere, second, kelvin })
+// Adding zero turns −0 into 0.
+const of = (volt = 0, ampere = 0, second = 0, kelvin = 0): Dimension => ({
+  volt: volt + 0,
+  ampere: ampere + 0,
+  second: second + 0,
+  kelvin: kelvin + 0,
+})
 
 /** Dimensions of the units: an ohm is a volt an ampere, a farad an ampere second a volt. */
 export const DIMENSIONS: Record<Unit, Dimension> = {
@@ -46,7 +53,8 @@ export function dimensionOf(formula: Formula, dimensions: Readonly<Record<string
   try {
     return { ok: true, value: walk(formula.tree, known) }
   } catch (error) {
-    if (error instanceof Mismatch) return unread('formula-dimension', error.message, { line: 1, column: error.column })
+    if (error instanceof Mismatch)
+      return unread('formula-dimension', error.message, placeAt(formula.text, error.column))
     throw error
   }
 }
@@ -60,18 +68,23 @@ class Mismatch extends Error {
   }
 }
 
+const close = (a: number, b: number) => Math.abs(a - b) < 1e-9
+
+/** True when two quantities may be added; `any` fits each. */
 export const sameDimension = (a: Dimension, b: Dimension): boolean =>
   a === 'any' ||
   b === 'any' ||
-  (a.volt === b.volt && a.ampere === b.ampere && a.second === b.second && a.kelvin === b.kelvin)
+  (close(a.volt, b.volt) && close(a.ampere, b.ampere) && close(a.second, b.second) && close(a.kelvin, b.kelvin))
 
 const combine = (a: Dimension, b: Dimension, sign: 1 | -1): Dimension =>
   a === 'any' || b === 'any'
     ? 'any'
     : of(a.volt + sign * b.volt, a.ampere + sign * b.ampere, a.second + sign * b.second, a.kelvin + sign * b.kelvin)
 
-const scaled = (a: Dimension, n: number): Dimension =>
-  a === 'any' ? a : of(n * a.volt, n * a.ampere, n * a.second, n * a.kelvin)
+function scaled(a: Dimension, n: number): Dimension {
+  if (n === 0) return of()
+  return a === 'any' ? a : of(n * a.volt, n * a.ampere, n * a.second, n * a.kelvin)
+}
 
 function walk(tree: Tree, known: Readonly<Record<string, Dimension>>): Dimension {
   switch (tree.type) {
@@ -109,20 +122,26 @@ function arithmeticDimension(
     return alike([tree.left, tree.right], known, tree.operator === '+' ? 'adds' : 'subtracts')
   const left = walk(tree.left, known)
   if (tree.operator !== '^') return combine(left, walk(tree.right, known), tree.operator === '*' ? 1 : -1)
+  requirePlain(walk(tree.right, known), tree.right, 'An exponent')
   const exponent = constantValue(tree.right)
   if (exponent !== null) return scaled(left, exponent)
-  plain(tree.left, known, 'A power with a varying exponent')
-  plain(tree.right, known, 'An exponent')
+  requirePlain(left, tree.left, 'A power with a varying exponent')
   return of()
 }
 
-/** The value of a tree without names, or null. */
+/** The value of a tree without names and op-amp data, or null. */
 function constantValue(tree: Tree): number | null {
-  try {
-    return compileFormula({ text: '', kind: 'value', tree, names: new Set(), opampData: [] }, [])(new Float64Array(0))
-  } catch {
-    return null
-  }
+  if (!isConstant(tree)) return null
+  const formula: Formula = { text: '', kind: 'value', tree, names: new Set(), opampData: [] }
+  const value = compileFormula(formula, [])(new Float64Array(0))
+  return Number.isFinite(value) ? value : null
+}
+
+function isConstant(tree: Tree): boolean {
+  if (tree.type === 'name') return Object.hasOwn(CONSTANTS, tree.name)
+  if (tree.type === 'call') return tree.args.every(isConstant)
+  if (tree.type === 'minus') return isConstant(tree.arg)
+  return tree.type === 'arithmetic' ? isConstant(tree.left) && isConstant(tree.right) : tree.type === 'number'
 }
 
 function callDimension(tree: Tree & { type: 'call' }, known: Readonly<Record<string, Dimension>>): Dimension {
@@ -140,13 +159,12 @@ function callDimension(tree: Tree & { type: 'call' }, known: Readonly<Record<str
       alike(tree.args, known, 'takes into atan2')
       return of()
     default:
-      plain(tree.args[0]!, known, tree.name)
+      requirePlain(walk(tree.args[0]!, known), tree.args[0]!, tree.name)
       return of()
   }
 }
 
-function plain(tree: Tree, known: Readonly<Record<string, Dimension>>, what: string) {
-  const found = walk(tree, known)
+function requirePlain(found: Dimension, tree: Tree, what: string) {
   if (!sameDimension(found, of()))
     throw new Mismatch(`${what} takes a plain number; this is ${dimensionWords(found)}.`, columnOf(tree))
 }

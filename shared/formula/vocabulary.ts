@@ -51,6 +51,7 @@ export const OPAMP_DATA = {
   V_os: 'V',
   I_b: 'A',
   e_n: 'V/√Hz',
+  i_n: 'A/√Hz',
   R_o: 'Ω',
   C_in: 'F',
 } as const
