@@ -62,15 +62,13 @@ export function readRecipe(
   return { targets, free, steps }
 }
 
-/** Op-amp data that limits may use, as `GBW(U1)`. */
-const OPAMP_DATA = /\b(A0|GBW|SR|Vos|Ib|en|in|Rout|Cin)\s*\(\s*U[A-Za-z0-9_]*\s*\)/
-
-/** Reads `limits`. One that needs op-amp data is kept, and applies once an op-amp is chosen. */
+/** Reads `limits`. One that needs op-amp data, as `GBW(U1)`, is kept, and applies once an op-amp is chosen. */
 export function readLimits(context: ReadingContext, source: CalculatorSource): StageLimit[] {
   return source.limits.flatMap((limit, k): StageLimit[] => {
     const path = ['limits', k, 'when']
-    if (OPAMP_DATA.test(limit.when)) return [{ level: limit.level, when: limit.when, say: limit.say, applies: null }]
     const read = context.condition(path, limit.when)
-    return read ? [{ level: limit.level, when: limit.when, say: limit.say, applies: read.applies }] : []
+    if (!read) return []
+    const applies = read.formula.opampData.length > 0 ? null : read.applies
+    return [{ level: limit.level, when: limit.when, say: limit.say, applies }]
   })
 }

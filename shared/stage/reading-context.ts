@@ -85,7 +85,8 @@ export class ReadingContext {
     const unknown = [...formula.names].filter((name) => !this.names.includes(name) && !extra.includes(name))
     if (unknown.length === 0) return true
     // Compiling names the unknown one with its column and the nearest known name.
-    this.guard(path, () => compileFormula(formula, [...this.names, ...extra]))
+    const compile = formula.kind === 'condition' ? compileCondition : compileFormula
+    this.guard(path, () => compile(formula, [...this.names, ...extra]))
     return false
   }
 
