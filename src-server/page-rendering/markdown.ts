@@ -13,6 +13,8 @@ export interface RenderedMarkdown {
 const NESTING_MAX = 30
 /** Pieces of a page; a page of this size is rendered in well under half a second. */
 const TOKENS_MAX = 12_000
+/** Lines of a page; most of them would be pieces. */
+const LINES_MAX = 6000
 const WIDGETS = ['circuit', 'calculator', 'limits']
 
 /** CommonMark with the page's own marks. Raw HTML stays text; widgets become empty places that the client fills. */
@@ -40,6 +42,8 @@ markdown.renderer.rules['fence'] = (tokens, index) => {
  * @throws {ProblemError} 'page-not-read' when the notes hold too many pieces
  */
 export function renderMarkdown(body: string): RenderedMarkdown {
+  if (body.split(/\r\n?|\n/, LINES_MAX + 1).length > LINES_MAX)
+    throw new ProblemError('page-not-read', `These notes have more than ${LINES_MAX} lines; split the page.`)
   const environment: { headings: Heading[] } = { headings: [] }
   const tokens = markdown.parse(body, environment)
   const count = tokens.reduce((sum, token) => sum + 1 + (token.children?.length ?? 0), 0)
