@@ -6,6 +6,10 @@ export const EQUAL_ERROR = 1e-9
 
 /** A set with the figures that decide between sets of equal error. */
 export interface RankedSet extends SizedSet {
+  /** Relative error of each target asked, the largest first. */
+  errors: number[]
+  /** How far the targets not asked lie from what stands in for them, as a sum of natural logarithms. */
+  offStandIn: number
   /** How far outside the house range of impedances, as a sum of natural logarithms; 0 inside. */
   outside: number
   /** How far the free picks lie from their start, as a sum of natural logarithms. */
@@ -35,20 +39,36 @@ const tooSmall = (log: number) => Math.max(0, Math.log(HOUSE_LEAST_FARAD) - log)
 /** Octaves: spreads and distances that differ by less than a half of one do not decide. */
 const octaves = (log: number) => Math.round((2 * log) / Math.LN2) / 2
 
+/** A worst error above this means that a target is out of reach; the others are to be met all the same. */
+const OUT_OF_REACH = 0.01
+
+/** True when every value lies in the house range of impedances. */
+export const insideHouse = (set: RankedSet) => octaves(set.outside) === 0
+
 /**
- * Order of two sets: worst target error first, errors within `goodEnough` (or 1e-9 of each other) being equal; then the
- * house rules: impedances inside the house range, free picks near their start, small spread; then the smaller error,
- * then ascending values.
+ * Order of two sets: worst target error first, errors within `goodEnough` (or 1e-9 of each other) being equal; where a
+ * target is out of reach, the next error; then the house rules: targets not asked near their stand-in, impedances inside
+ * the house range, free picks near their start, small spread; then the smaller error, then ascending values.
  */
 export function compareSets(a: RankedSet, b: RankedSet, goodEnough: number): number {
   return (
     compareErrors(a.worstError, b.worstError, goodEnough) ||
+    (a.worstError > Math.max(goodEnough, OUT_OF_REACH) ? compareRest(a.errors, b.errors, goodEnough) : 0) ||
+    octaves(a.offStandIn) - octaves(b.offStandIn) ||
     octaves(a.outside) - octaves(b.outside) ||
     octaves(a.farFromStart) - octaves(b.farFromStart) ||
     octaves(Math.log(a.spread)) - octaves(Math.log(b.spread)) ||
     compareErrors(a.worstError, b.worstError, 0) ||
     compareValues(a, b)
   )
+}
+
+function compareRest(a: number[], b: number[], goodEnough: number): number {
+  for (let k = 1; k < a.length; k++) {
+    const order = compareErrors(a[k]!, b[k]!, goodEnough)
+    if (order) return order
+  }
+  return 0
 }
 
 function compareErrors(a: number, b: number, goodEnough: number): number {

@@ -13,7 +13,8 @@ export interface FreePick extends SearchPart {
 
 export interface Requirement {
   holds: (env: Float64Array) => boolean
-  /** Nearest feasible value of the target that the requirement names. */
+  /** Slot of the target that the requirement names, with its nearest feasible value. */
+  target?: number
   nearest?: (env: Float64Array) => number
 }
 
@@ -29,6 +30,8 @@ export interface SearchTarget {
   /** Asked for, or only standing in for one that was not. */
   asked: boolean
   formula: (env: Float64Array) => number
+  /** Slots that the formula reads. */
+  uses: ReadonlySet<number>
 }
 
 export interface SizingProblem {

@@ -28,6 +28,7 @@ export function sizeStage(stage: Stage, asked: StageAsked): SizingOutcome | null
         round: one.round,
         requirements: one.requirements.map((requirement) => ({
           holds: requirement.holds,
+          ...(requirement.target === null ? {} : { target: stage.slots.get(requirement.target)! }),
           ...(requirement.nearest ? { nearest: requirement.nearest } : {}),
         })),
       })),
@@ -36,7 +37,7 @@ export function sizeStage(stage: Stage, asked: StageAsked): SizingOutcome | null
       slot: stage.slots.get(name)!,
       value: asked.targets[name] ?? standIn,
       asked: Object.hasOwn(asked.targets, name),
-      formula: formulaAlone(stage, name),
+      ...formulaAlone(stage, name),
     })),
     goodEnough: asked.goodEnough,
   }
@@ -48,15 +49,20 @@ const stockOf = (part: StagePart, asked: StageAsked): number[] =>
   stockValues(part.kind, asked.series[part.name] ?? part.series, part.from, part.to)
 
 /** A result from the parts alone: what it needs of other results is computed beside the vector, not read from it. */
-function formulaAlone(stage: Stage, name: string): (env: Float64Array) => number {
+function formulaAlone(stage: Stage, name: string) {
   const needed = neededResults(stage, name)
   const scratch = new Float64Array(stage.slots.size)
   const slots = needed.map((one) => stage.slots.get(one.name)!)
   const slot = stage.slots.get(name)!
-  return (env) => {
+  const alone = needed.length === 1 && needed[0]!.name === name ? needed[0]!.evaluate! : null
+  const formula = (env: Float64Array) => {
     scratch.set(env)
     for (let k = 0; k < needed.length; k++) scratch[slots[k]!] = needed[k]!.evaluate!(scratch)
     return scratch[slot]!
+  }
+  return {
+    formula: alone ?? formula,
+    uses: new Set(needed.flatMap((one) => [...one.formula!.names].map((used) => stage.slots.get(used)!))),
   }
 }
 
