@@ -27,6 +27,24 @@ function preparedFor(stage: Stage, conditions: Conditions, output: string): Prep
   return made
 }
 
+const found = new WeakMap<PartValues, Map<string, CircuitFigures>>()
+
+/**
+ * The figures of one set of values, shared by all who ask for the same set: results, plot, phase and cursor.
+ * @param values must not be changed afterwards
+ */
+export function circuitFigures(stage: Stage, values: PartValues, conditions: Conditions): CircuitFigures {
+  const { sourceOhm, loadOhm, loadFarad } = conditions
+  const key = JSON.stringify([sourceOhm, loadOhm, loadFarad])
+  const all = found.get(values) ?? new Map<string, CircuitFigures>()
+  found.set(values, all)
+  const kept = all.get(key)
+  if (kept?.isOf(stage)) return kept
+  const made = new CircuitFigures(stage, values, conditions)
+  all.set(key, made)
+  return made
+}
+
 /**
  * What is found on the circuit itself at one set of values, never through the block's formulas. Each thing is computed
  * when first asked for.
@@ -41,6 +59,10 @@ export class CircuitFigures {
     private readonly conditions: Conditions,
   ) {
     this.values = elementValues(stage, values)
+  }
+
+  isOf(stage: Stage): boolean {
+    return this.stage === stage
   }
 
   /** H at the frequencies, by nodal analysis; shape [n]. */

@@ -12,7 +12,7 @@ import { inStock } from '../preferred-values/stock'
 import { formatQuantity } from '../quantities/format'
 import type { Unit } from '../quantities/unit'
 import type { SizedSet, SizingOutcome } from '../sizing/recipe'
-import { CircuitFigures } from './circuit-figures'
+import { circuitFigures } from './circuit-figures'
 import { sizeStage } from './size'
 import type { Stage, StageAsked } from './stage'
 import { computeResults, defaultValues, vectorOf } from './values'
@@ -31,8 +31,8 @@ const WORTH_SHOWING = 1e-3
 export function evaluateStage(stage: Stage, asked: StageAsked): StageOutcome {
   const sizing = sizeStage(stage, asked)
   const values = fittedValues(stage, asked, sizing?.best ?? null)
-  const ideal = new CircuitFigures(stage, values, {})
-  const loaded = changesResponse(asked.conditions) ? new CircuitFigures(stage, values, asked.conditions) : null
+  const ideal = circuitFigures(stage, values, {})
+  const loaded = changesResponse(asked.conditions) ? circuitFigures(stage, values, asked.conditions) : null
   const env = vectorOf(stage, values, asked.conditions)
   computeResults(stage, env, (result) => ideal.find(result, env))
   const results: Record<string, ResultOutcome> = {}

@@ -1,7 +1,7 @@
 import { phaseRad } from '../analysis/phase'
 import type { ResponseVector } from '../contracts/compute'
 import type { Conditions } from '../contracts/conditions'
-import { CircuitFigures } from './circuit-figures'
+import { circuitFigures } from './circuit-figures'
 import { logFrequencies } from './frequencies'
 import type { Stage } from './stage'
 import type { PartValues } from './values'
@@ -17,7 +17,7 @@ export function stageResponse(
   output: string,
   frequenciesHz: ArrayLike<number>,
 ): ResponseVector {
-  const found = new CircuitFigures(stage, values, conditions).response(output, frequenciesHz)
+  const found = circuitFigures(stage, values, conditions).response(output, frequenciesHz)
   return { output, frequenciesHz: Array.from(frequenciesHz), re: Array.from(found.re), im: Array.from(found.im) }
 }
 
@@ -29,7 +29,7 @@ export function stagePhase(
   output: string,
   frequenciesHz: ArrayLike<number>,
 ): number[] {
-  return Array.from(phaseRad(new CircuitFigures(stage, values, conditions).rational(output), frequenciesHz))
+  return Array.from(phaseRad(circuitFigures(stage, values, conditions).rational(output), frequenciesHz))
 }
 
 /**
@@ -37,7 +37,7 @@ export function stagePhase(
  * zero to well above the highest, so that the axis rests while a value is typed.
  */
 export function plotFrequencies(stage: Stage, values: PartValues, count = PLOT_POINTS): number[] {
-  const [low, high] = new CircuitFigures(stage, values, {}).span(stage.plot.output)
+  const [low, high] = circuitFigures(stage, values, {}).span(stage.plot.output)
   const fromHz = stage.plot.fromHz ?? 10 ** Math.floor(Math.log10(low / 20))
   const toHz = stage.plot.toHz ?? 10 ** Math.ceil(Math.log10(high * 40))
   return Array.from(logFrequencies(fromHz, Math.max(toHz, fromHz * 10), count))
@@ -45,7 +45,7 @@ export function plotFrequencies(stage: Stage, values: PartValues, count = PLOT_P
 
 /** Frequency that a stage is about, Hz: its corner or centre result, else the middle of its poles and zeros. */
 export function centreHz(stage: Stage, values: PartValues): number {
-  const figures = new CircuitFigures(stage, values, {})
+  const figures = circuitFigures(stage, values, {})
   const corner = stage.results.find((one) => one.is?.kind === 'half-power' && one.is.edge === 'only')
   const natural = stage.results.find((one) => one.is?.kind === 'natural-frequency')
   const found = [corner, natural].map((one) => (one ? figures.find(one, new Float64Array(0)) : NaN)).find((f) => f > 0)

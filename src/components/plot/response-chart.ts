@@ -2,7 +2,6 @@ import { LineChart } from 'echarts/charts'
 import { GridComponent } from 'echarts/components'
 import { init, use, type ECharts } from 'echarts/core'
 import { SVGRenderer } from 'echarts/renderers'
-import type { BenchCurve } from '../../composables/use-bench'
 import { PLOT_MARGIN, type PlotScale } from './plot-scale'
 
 use([LineChart, GridComponent, SVGRenderer])
@@ -18,8 +17,11 @@ export function decadeLabel(hertz: number): string {
   return prefix === undefined ? '' : `${10 ** (power - 3 * Math.floor(power / 3))}${prefix && ` ${prefix}`}`
 }
 
-/** Draws a response into an element: magnitude solid petrol, phase dashed copper. */
-export class ResponseChart {
+/**
+ * The frame of a response plot: axes, grid and labels. The curves change with every key and are drawn beside it as plain
+ * paths, which takes a small part of the time that a chart needs for new data.
+ */
+export class ResponseFrame {
   private readonly chart: ECharts
   private shownScale = ''
 
@@ -27,20 +29,12 @@ export class ResponseChart {
     this.chart = init(element, null, { renderer: 'svg' })
   }
 
-  /** Draws the curve; axes are set anew only when the scale, theme or size changed. */
-  draw(curve: BenchCurve, scale: PlotScale, force = false) {
-    const pairs = (values: number[]) => curve.frequenciesHz.map((f, k): [number, number] => [f, values[k]!])
+  /** Draws the frame when the scale has changed, or when theme or size have. */
+  draw(scale: PlotScale, force = false) {
     const key = JSON.stringify(scale)
-    const series = [
-      { id: 'magnitude', data: pairs(curve.magnitudeDb.map((db) => Math.max(db, scale.bottomDb - 200))) },
-      { id: 'phase', data: pairs(curve.phaseDegrees) },
-    ]
-    if (!force && key === this.shownScale) {
-      this.chart.setOption({ series }, { silent: true })
-      return
-    }
+    if (!force && key === this.shownScale) return
     this.shownScale = key
-    this.chart.setOption(this.whole(scale, series), { notMerge: true })
+    this.chart.setOption(this.whole(scale), { notMerge: true })
   }
 
   resize() {
@@ -51,7 +45,7 @@ export class ResponseChart {
     this.chart.dispose()
   }
 
-  private whole(scale: PlotScale, series: { id: string; data: [number, number][] }[]) {
+  private whole(scale: PlotScale) {
     const css = getComputedStyle(this.element)
     const colour = (name: string) => css.getPropertyValue(name).trim()
     const label = { color: colour('--ink'), fontFamily: css.getPropertyValue('--mono'), fontSize: 12 }
@@ -87,19 +81,8 @@ export class ResponseChart {
         value(scale.topDb, scale.bottomDb, signed, 'left'),
         value(scale.topDegrees, scale.bottomDegrees, (degrees) => `${signed(degrees)}°`, 'right'),
       ],
-      series: [
-        { ...SERIES, ...series[0], yAxisIndex: 0, lineStyle: { color: colour('--petrol'), width: 2.4 } },
-        { ...SERIES, ...series[1], yAxisIndex: 1, lineStyle: { color: colour('--copper'), width: 1.8, type: [6, 4] } },
-      ],
+      // An axis is drawn only where a series stands on it.
+      series: [0, 1].map((yAxisIndex) => ({ type: 'line', yAxisIndex, data: [], silent: true })),
     }
   }
 }
-
-const SERIES = {
-  type: 'line',
-  showSymbol: false,
-  silent: true,
-  emphasis: { disabled: true },
-  clip: true,
-  animation: false,
-} as const
