@@ -128,7 +128,7 @@ function readRatio(stage: Stage, result: StageResult, typed: Typed): Reading<num
   if (!reading.ok) return reading
   const { gain, decibel } = typeof reading.value === 'number' ? { gain: reading.value, decibel: false } : reading.value
   if (gain === 0) return unread('value-not-positive', `${result.name} cannot be zero.`)
-  if (Math.abs(gain) > 1e9)
+  if (Math.abs(gain) > 1e9 || Math.abs(gain) < 1e-9)
     return unread(
       'value-out-of-range',
       `${result.name} of ${formatQuantity(gain, '')} is beyond anything that can be built.`,
