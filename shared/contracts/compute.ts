@@ -6,6 +6,14 @@ import { BlockCode, OutputName, PartRef, ResultName } from './names'
 /** A number in SI units, or text as an engineer types it. */
 export const Quantity = z.union([z.number(), z.string().max(200)])
 
+/**
+ * A computed figure. Where the circuit has none (the peak of a response without a peak) it is NaN here and null in
+ * JSON, which knows no NaN.
+ */
+export const Figure = z
+  .custom<number | null>((value) => value === null || typeof value === 'number', 'Expected a number or null.')
+  .transform((value) => value ?? NaN)
+
 export const FREQUENCIES_MAX = 20_000
 
 /** What may be sent to a compute address; values and targets are read by unit afterwards. */
@@ -36,13 +44,13 @@ export const PartOutcome = z.strictObject({
 
 export const ResultOutcome = z.strictObject({
   /** The formula at the fitted values (ideal amplifier, unloaded); without a formula, the figure found on the circuit. */
-  value: z.number(),
+  value: Figure,
   unit: z.string(),
   target: z.number().optional(),
   /** (figure − target) / |target|, of the figure under the conditions where that stands. */
-  relativeError: z.number().optional(),
+  relativeError: Figure.optional(),
   /** Found on the circuit under the conditions, when it differs by more than 0.1 %. */
-  underConditions: z.number().optional(),
+  underConditions: Figure.optional(),
 })
 
 export const SELF_CHECK_OUTCOMES = ['agrees', 'differs', 'not checked'] as const
@@ -82,8 +90,8 @@ export const RunnerUp = z.strictObject({
 export const ResponseVector = z.strictObject({
   output: OutputName,
   frequenciesHz: z.array(z.number()),
-  re: z.array(z.number()),
-  im: z.array(z.number()),
+  re: z.array(Figure),
+  im: z.array(Figure),
 })
 
 /** A stage at its values, all but the response. */

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { TitleBlock } from './blocks'
-import { LimitOutcome, Quantity, SelfCheck, StageOutcome, ResponseVector } from './compute'
+import { Figure, LimitOutcome, Quantity, SelfCheck, StageOutcome, ResponseVector } from './compute'
 import { Conditions } from './conditions'
 import { BlockCode, Instant, RevisionNumber, RevisionStatus, SizingNumber } from './names'
 
@@ -33,7 +33,7 @@ export type SaveSizing = z.input<typeof SaveSizing>
 /** Op-amp data copied into a sizing; empty while none is chosen. */
 export const OpAmpCopies = z.record(z.string(), z.record(z.string(), z.union([z.number(), z.string()])))
 
-export const TestPoint = z.strictObject({ frequencyHz: z.number(), gainDb: z.number(), phaseRad: z.number() })
+export const TestPoint = z.strictObject({ frequencyHz: z.number(), gainDb: Figure, phaseRad: Figure })
 
 /** A sizing: immutable, with the server's own figures. */
 export const Sizing = z.strictObject({
@@ -53,7 +53,7 @@ export const Sizing = z.strictObject({
   reason: z.string(),
   response: ResponseVector,
   /** arg H unwrapped by the house convention, rad, as long as the response. */
-  phaseRad: z.array(z.number()),
+  phaseRad: z.array(Figure),
   testTable: z.array(TestPoint),
   selfCheck: SelfCheck,
   engineVersion: z.string(),
@@ -87,6 +87,6 @@ export type SizingList = z.output<typeof SizingList>
 export const CheckAgain = z.strictObject({
   engineVersion: z.string(),
   storedEngineVersion: z.string(),
-  differences: z.array(z.strictObject({ name: z.string(), stored: z.number(), now: z.number(), relative: z.number() })),
+  differences: z.array(z.strictObject({ name: z.string(), stored: Figure, now: Figure, relative: Figure })),
 })
 export type CheckAgain = z.output<typeof CheckAgain>

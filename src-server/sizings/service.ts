@@ -198,9 +198,9 @@ export function sizingService({ database, blocks, sizings, baseUrl, now }: Needs
             name,
             stored: was,
             now: is,
-            relative: was === is ? 0 : Math.abs(is - was) / Math.abs(was),
+            relative: Object.is(was, is) || was === is ? 0 : was === 0 ? NaN : Math.abs(is - was) / Math.abs(was),
           }))
-          .filter((one) => one.relative > SAME),
+          .filter((one) => !(one.relative <= SAME)),
       }
     },
   }

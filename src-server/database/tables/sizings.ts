@@ -1,7 +1,7 @@
 import { index, int, mysqlTable, unique, varchar } from 'drizzle-orm/mysql-core'
 import { z } from 'zod'
 import { TitleBlock } from '#shared/contracts/blocks'
-import { LimitOutcome, ResponseVector, SelfCheck, StageOutcome } from '#shared/contracts/compute'
+import { Figure, LimitOutcome, ResponseVector, SelfCheck, StageOutcome } from '#shared/contracts/compute'
 import { Conditions } from '#shared/contracts/conditions'
 import { NOTE_MAX, OpAmpCopies, REASON_MAX, SaveSizing, TestPoint } from '#shared/contracts/sizings'
 import { instant, jsonOf } from '../column-types'
@@ -29,7 +29,7 @@ export const sizings = mysqlTable(
     note: varchar({ length: NOTE_MAX }).notNull(),
     reason: varchar({ length: REASON_MAX }).notNull(),
     response: jsonOf(ResponseVector).notNull(),
-    phaseRad: jsonOf(z.array(z.number())).notNull(),
+    phaseRad: jsonOf(z.array(Figure)).notNull(),
     testTable: jsonOf(z.array(TestPoint)).notNull(),
     selfCheck: jsonOf(SelfCheck).notNull(),
     engineVersion: varchar({ length: 40 }).notNull(),
