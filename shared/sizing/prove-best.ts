@@ -6,6 +6,8 @@ import { trendOf } from './trend'
 
 /** Formulas computed at most; a search that would need more ends with what it has. */
 const EVALUATIONS_MOST = 300_000
+/** The same where a set that is good enough will do, as on a page that follows each key. */
+const EVALUATIONS_MOST_LIVE = 60_000
 /** Formulas after which the search is given up if the choices made by then promise many times too many. */
 const LOOK_AHEAD_AFTER = 30_000
 const TOO_MANY = 3
@@ -46,6 +48,7 @@ export function proveBest(
   })
   const chosen = order.map((k) => parts[k]!)
   const levels = chosen.map((_, depth) => levelOf(chosen, order, all, depth))
+  const most = goodEnough > 0 ? EVALUATIONS_MOST_LIVE : EVALUATIONS_MOST
   let evaluations = 0
   let limit = bound
   let given = false
@@ -70,8 +73,8 @@ export function proveBest(
     for (let k = from; k < to && !given; k++) {
       const done = (k - from) / (to - from)
       given =
-        evaluations > EVALUATIONS_MOST ||
-        (depth === 0 && evaluations > LOOK_AHEAD_AFTER && evaluations > TOO_MANY * EVALUATIONS_MOST * done)
+        evaluations > most ||
+        (depth === 0 && evaluations > LOOK_AHEAD_AFTER && evaluations > TOO_MANY * most * done)
       env[slot] = stock[k]!
       evaluations += checks.length
       if (checks.every((ratio) => Math.abs(ratio(env) - 1) <= limit + SLACK)) choose(depth + 1)

@@ -82,7 +82,7 @@ export function searchStock(problem: SizingProblem): SizingOutcome {
     }
     return met
   }
-  const met = followAll(problem.targets, 0, PICKS_FIRST)
+  let met = followAll(problem.targets, 0, PICKS_FIRST)
   if (best.size === 0 && failed.size > 0)
     followAll(nearestTargets(problem.targets, [...failed.values()]), 0, PICKS_FIRST)
 
@@ -101,7 +101,7 @@ export function searchStock(problem: SizingProblem): SizingOutcome {
       return worstOf()
     }
     if (!proveBest(parts, movable, env, reached ? worstOf() : NO_SET_ERROR, problem.goodEnough, offer))
-      followAll(problem.targets, PICKS_FIRST, PICKS_MOST)
+      met = followAll(problem.targets, PICKS_FIRST, PICKS_MOST) || met
   }
 
   const ranked = rank()

@@ -7,6 +7,7 @@ import type {
   RunnerUp,
   StageOutcome,
 } from '../contracts/compute'
+import { CONDITION_FIELDS } from '../contracts/conditions'
 import { isPreferred } from '../preferred-values/lookup'
 import { inStock } from '../preferred-values/stock'
 import { formatQuantity } from '../quantities/format'
@@ -120,10 +121,13 @@ export function liveSentence(
     if (Object.hasOwn(extra, name)) return extra[name]!
     const slot = stage.slots.get(name)
     if (slot === undefined) return whole
-    const unit =
-      stage.results.find((one) => one.name === name)?.unit ?? stage.parts.find((one) => one.name === name)?.unit ?? ''
-    return formatQuantity(env[slot]!, unit as Unit)
+    return formatQuantity(env[slot]!, unitOfName(stage, name) as Unit)
   })
+}
+
+function unitOfName(stage: Stage, name: string): string {
+  const entry = stage.results.find((one) => one.name === name) ?? stage.parts.find((one) => one.name === name)
+  return entry?.unit ?? CONDITION_FIELDS[name as keyof typeof CONDITION_FIELDS].unit
 }
 
 function infeasibleTargets(stage: Stage, asked: StageAsked, sizing: SizingOutcome | null): Infeasible[] {

@@ -1,7 +1,9 @@
 import type { Circuit, PassiveKind } from '../circuit/part'
 import { PART_UNITS } from '../circuit/part'
 import type { CalculatorSource, PartEntry } from '../contracts/calculator'
+import { formatQuantity } from '../quantities/format'
 import { readPercent } from '../quantities/read'
+import { BUILDABLE } from './buildable'
 import type { ReadingContext } from './reading-context'
 import type { StagePart } from './stage'
 
@@ -72,13 +74,13 @@ function readPart(
     return null
   }
   const read = (key: 'default' | 'from' | 'to') =>
-    entry[key] === undefined ? undefined : context.quantity([...path, key], entry[key], unit, name)
+    entry[key] === undefined ? undefined : readBuildable(context, [...path, key], entry[key], unit, name)
   const value = read('default')
-  const from = read('from') ?? house.from
-  const to = read('to') ?? house.to
+  const from = entry.from === undefined ? house.from : read('from')
+  const to = entry.to === undefined ? house.to : read('to')
   const tolerance =
     entry.tolerance === undefined ? house.tolerance : context.take([...path, 'tolerance'], readPercent(entry.tolerance))
-  if (value === undefined || tolerance === undefined) return null
+  if (value === undefined || from === undefined || to === undefined || tolerance === undefined) return null
   if (!(from < to)) {
     context.complain([...path, 'from'], `The range of ${name} runs from the smaller to the larger value.`)
     return null
@@ -97,6 +99,20 @@ function readPart(
     class: entry.class ?? null,
     meaning: entry.meaning ?? null,
   }
+}
+
+function readBuildable(
+  context: ReadingContext,
+  path: string[],
+  text: string,
+  unit: StagePart['unit'],
+  name: string,
+): number | undefined {
+  const value = context.quantity(path, text, unit, name)
+  const [least, most] = BUILDABLE[unit]
+  if (value === undefined || (value >= least && value <= most)) return value
+  context.complain(path, `${formatQuantity(value, unit)} cannot be built.`, 'value-out-of-range')
+  return undefined
 }
 
 /** Drift is written in ppm/K: `25 ppm/K`. */

@@ -24,7 +24,8 @@ export function readRecipe(
         result.unit === ''
           ? context.take(path, readGain(text))?.gain
           : context.quantity(path, text, result.unit as Unit, name)
-      if (value !== undefined) targets.set(name, value)
+      if (value === 0) context.complain(path, `${name} cannot be asked to be zero.`)
+      else if (value !== undefined) targets.set(name, value)
     }
   }
   const sized = new Set<string>()

@@ -8,11 +8,9 @@ import { readGain, readQuantity, readTemperature } from '../quantities/read'
 import type { Unit } from '../quantities/unit'
 import type { Problem, ProblemCode, Reading } from '../problems'
 import { unread } from '../problems'
+import { BUILDABLE } from './buildable'
 import type { Stage, StageAsked, StagePart, StageResult } from './stage'
 import { computeResults, defaultValues, vectorOf } from './values'
-
-/** What can be built at all; outside it a value is a slip of the pen. Common practice. */
-const BUILDABLE = { Ω: [1e-3, 1e12], F: [1e-17, 10], H: [1e-12, 1e4] } as const
 
 type Typed = number | string
 

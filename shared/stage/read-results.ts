@@ -88,8 +88,7 @@ export function resultOrder(context: ReadingContext, results: StageResult[]): St
     for (const name of uses) {
       const other = byName.get(name)
       if (other && other !== one) visit(other, [...above, one.name])
-      else if (other === one && one.formula?.names.has(name))
-        context.complain(['results', name], `The formula of ${name} uses ${name} itself.`)
+      else if (other === one) context.complain(['results', name], `${name} is computed from ${name} itself.`)
     }
     done.add(one.name)
     order.push(one)

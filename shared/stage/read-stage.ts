@@ -53,6 +53,9 @@ export function readStage(source: StageSource): Reading<Stage> {
     calculator.plots?.[key] === undefined
       ? null
       : (context.quantity(['plots', key], calculator.plots[key], 'Hz') ?? null)
+  const [fromHz, toHz] = [hertz('from'), hertz('to')]
+  if (fromHz !== null && toHz !== null && !(fromHz < toHz))
+    context.complain(['plots'], 'The range of the plot runs from the lower to the higher frequency.')
   const stage: Stage = {
     circuit: circuit.value,
     netlist: netlist.value,
@@ -64,8 +67,8 @@ export function readStage(source: StageSource): Reading<Stage> {
     limits: readLimits(context, calculator),
     outputs,
     plot: {
-      fromHz: hertz('from'),
-      toHz: hertz('to'),
+      fromHz,
+      toHz,
       output: readOutput(context, ['plots', 'output'], calculator.plots?.output, outputs),
     },
     slots: new Map(context.names.map((name, slot) => [name, slot])),

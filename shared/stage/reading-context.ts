@@ -45,8 +45,12 @@ export class ReadingContext {
     return undefined
   }
 
-  quantity(path: Path, text: string, unit: Unit, name?: string, allowZero = false): number | undefined {
-    return this.take(path, readQuantity(text, unit, { name, allowZero, allowNegative: unit === '' }))
+  /** A quantity above zero. */
+  quantity(path: Path, text: string, unit: Unit, name?: string): number | undefined {
+    const value = this.take(path, readQuantity(text, unit, { name }))
+    if (value !== 0) return value
+    this.complain(path, `${name ?? 'This'} must be above zero.`, 'value-not-positive')
+    return undefined
   }
 
   /** A formula of the wanted dimension, compiled on the shared vector. */
