@@ -1,7 +1,13 @@
+import { distance } from './picks'
 import type { RankedSet } from './rank'
 import { compareSets } from './rank'
 import type { SizingProblem, Step } from './recipe'
 import { bothSides, firstAtLeast, oneSided } from './stock-places'
+
+/** Combinations of stock neighbours tried at most; of the steps beyond, the nearest value alone is. */
+const COMBINATIONS_MOST = 1024
+/** Recipes with more steps are polished one part at a time. */
+const PAIRED_STEPS_MOST = 10
 
 /** Every combination of the stock neighbours of the recipe's values, with the picks as they are. */
 export function* neighbours(
@@ -10,11 +16,15 @@ export function* neighbours(
   ideal: ReadonlyMap<number, number>,
 ): Generator<Map<number, number>> {
   const each = problem.steps.length <= 2 && problem.free.length <= 1 ? 2 : 1
-  const choices = problem.steps.map((step) =>
-    step.round === 'nearest'
-      ? bothSides(step.stock, ideal.get(step.slot)!, each)
-      : oneSided(step.stock, ideal.get(step.slot)!, 2, step.round),
-  )
+  let combinations = 1
+  const choices = problem.steps.map((step) => {
+    const exact = ideal.get(step.slot)!
+    const all =
+      step.round === 'nearest' ? bothSides(step.stock, exact, each) : oneSided(step.stock, exact, 2, step.round)
+    const few = combinations * all.length > COMBINATIONS_MOST ? nearestOf(all, exact) : all
+    combinations *= few.length
+    return few
+  })
   if (choices.some((one) => one.length === 0)) return
   const index = choices.map(() => 0)
   for (;;) {
@@ -27,6 +37,9 @@ export function* neighbours(
     if (k === index.length) return
   }
 }
+
+const nearestOf = (values: number[], exact: number): number[] =>
+  [...values].sort((a, b) => distance(a, exact) - distance(b, exact)).slice(0, 1)
 
 /** Moves one or two sized parts by up to two stock steps while that makes the set better; free picks stay. */
 export function polish(
@@ -55,7 +68,7 @@ function* moves(values: Map<number, number>, steps: Step[]): Generator<Map<numbe
   for (let a = 0; a < steps.length; a++)
     for (const first of near[a]!) {
       yield new Map(values).set(steps[a]!.slot, first)
-      for (let b = a + 1; b < steps.length; b++)
+      for (let b = a + 1; b < steps.length && steps.length <= PAIRED_STEPS_MOST; b++)
         for (const second of near[b]!) yield new Map(values).set(steps[a]!.slot, first).set(steps[b]!.slot, second)
     }
 }

@@ -7,6 +7,8 @@ export const PICKS_FIRST = 240
 /** Values of one free pick that are followed when another is free too; a fine series has no need of all of them. */
 const VALUES_MOST = 60
 const FINE_VALUES_MOST = 24
+/** Combinations of free picks that are put in order at most; many picks share them. */
+const COMBINATIONS_MOST = 3600
 
 /** How far a value lies from its start, as a natural logarithm; 0 when the start is unknown. */
 export const distance = (value: number, start: number) => (start > 0 ? Math.abs(Math.log(value / start)) : 0)
@@ -26,6 +28,7 @@ export function picksInOrder(problem: SizingProblem, starts: readonly number[]):
 function candidates(stock: number[], start: number, picks: number): number[] {
   if (picks === 1 || !(start > 0)) return stock
   const perDecade = stock.length / Math.max(1, Math.log10(stock.at(-1)! / stock[0]!))
-  const most = perDecade > 30 ? FINE_VALUES_MOST : VALUES_MOST
+  const share = Math.max(1, Math.floor(COMBINATIONS_MOST ** (1 / picks) + 1e-9))
+  const most = Math.min(share, perDecade > 30 ? FINE_VALUES_MOST : VALUES_MOST)
   return [...stock].sort((a, b) => distance(a, start) - distance(b, start)).slice(0, most)
 }

@@ -12,6 +12,8 @@ const EVALUATIONS_MOST_LIVE = 60_000
 const LOOK_AHEAD_AFTER = 30_000
 const TOO_MANY = 3
 const SLACK = 1e-9
+/** Combinations of more parts are beyond being looked through. */
+const PARTS_MOST = 12
 
 interface Target {
   /** Target over its wanted value: 1 when met. */
@@ -39,6 +41,7 @@ export function proveBest(
   goodEnough: number,
   offer: (values: Map<number, number>) => number,
 ): boolean {
+  if (parts.length > PARTS_MOST || parts.some((part) => part.stock.length === 0)) return false
   const all = targets.map((target) => targetAlong(target, parts, env))
   const order = searchOrder({
     counts: parts.map((part) => part.stock.length),
@@ -73,8 +76,7 @@ export function proveBest(
     for (let k = from; k < to && !given; k++) {
       const done = (k - from) / (to - from)
       given =
-        evaluations > most ||
-        (depth === 0 && evaluations > LOOK_AHEAD_AFTER && evaluations > TOO_MANY * most * done)
+        evaluations > most || (depth === 0 && evaluations > LOOK_AHEAD_AFTER && evaluations > TOO_MANY * most * done)
       env[slot] = stock[k]!
       evaluations += checks.length
       if (checks.every((ratio) => Math.abs(ratio(env) - 1) <= limit + SLACK)) choose(depth + 1)
