@@ -26,7 +26,13 @@ export function readYaml(text: string, firstLine = 1): Reading<PositionedYaml> {
   const deep = deepestLine(text)
   if (deep) return fail(`This goes more than ${DEPTH_MAX} levels deep.`, deep, 1)
   const lines = new LineCounter()
-  const document = parseDocument(text, { lineCounter: lines, uniqueKeys: true, prettyErrors: false, strict: true })
+  const document = parseDocument(text, {
+    lineCounter: lines,
+    uniqueKeys: true,
+    prettyErrors: false,
+    strict: true,
+    logLevel: 'error',
+  })
   const first = document.errors[0]
   if (first) {
     const at = lines.linePos(first.pos[0])
