@@ -29,6 +29,8 @@ const SQL_MODE =
   'STRICT_ALL_TABLES,ONLY_FULL_GROUP_BY,NO_ZERO_IN_DATE,NO_ZERO_DATE,ERROR_FOR_DIVISION_BY_ZERO,NO_ENGINE_SUBSTITUTION'
 export const QUEUE_LIMIT = 400
 const UNKNOWN_VARIABLE = 1193
+/** How much later than mysql2 itself we give a statement up. */
+const UNHEARD_MS = 500
 
 /** What is set on each connection, whatever the server's defaults are. */
 const sessionSettings = (snapshotIsolation: boolean): string[] => [
@@ -54,6 +56,9 @@ export function connectionOptions(url: string): mysql.ConnectionOptions {
     multipleStatements: false,
   }
 }
+
+const unanswered = (ms: number): NodeJS.ErrnoException =>
+  Object.assign(new Error(`no answer to a statement within ${ms} ms`), { code: 'PROTOCOL_SEQUENCE_TIMEOUT' })
 
 /** Inside a transaction nothing asks the pool again: with one connection that would wait for itself. */
 export const insideTransaction = new AsyncLocalStorage<true>()
@@ -97,15 +102,25 @@ export function openPool({
       query: (statement, values) =>
         new Promise((resolve, reject) => {
           const options = typeof statement === 'string' ? { sql: statement } : statement
-          connection.query(
-            { timeout: statementMs, ...options, values } as mysql.QueryOptions,
-            (error, rows, fields) => {
-              if (!error) return resolve([rows, fields])
-              lost ||= isConnectionLost(error)
-              if (error.code === 'PROTOCOL_SEQUENCE_TIMEOUT') onTrouble(error)
-              reject(error)
-            },
-          )
+          const withinMs = options.timeout ?? statementMs
+          let settled = false
+          const fail = (error: NodeJS.ErrnoException) => {
+            settled = true
+            clearTimeout(deadline)
+            lost ||= isConnectionLost(error)
+            if (error.code === 'PROTOCOL_SEQUENCE_TIMEOUT') onTrouble(error)
+            reject(error)
+          }
+          // mysql2 drops what waits on a connection that is destroyed, without a word.
+          const deadline = setTimeout(() => fail(unanswered(withinMs)), withinMs + UNHEARD_MS)
+          connection.query({ ...options, timeout: withinMs, values } as mysql.QueryOptions, (error, rows, fields) => {
+            // mysql2 calls again, with a deadline missed, for a statement whose connection was lost long ago.
+            if (settled) return
+            if (error) return fail(error)
+            settled = true
+            clearTimeout(deadline)
+            resolve([rows, fields])
+          })
         }),
       release: () => giveBack(lost ? 'destroy' : 'release'),
       destroy: () => giveBack('destroy'),
