@@ -1,3 +1,4 @@
+import type { RequestListener } from 'node:http'
 import closeWithGrace from 'close-with-grace'
 import { assemble } from './app/assemble'
 import { readConfiguration, type Configuration } from './app/configuration'
@@ -19,13 +20,17 @@ async function serve(configuration: Configuration): Promise<void> {
     process.stderr.write(`${warning}\n`)
   }
   const server = makeServer()
+  // Who asks while the rest is still being put together is answered once it is.
+  let serveWith: (app: RequestListener) => void = () => {}
+  const app = new Promise<RequestListener>((resolve) => (serveWith = resolve))
+  server.on('request', (request, response) => void app.then((handle) => handle(request, response)))
   const address = await listen(server, configuration.host, configuration.port).catch((error: NodeJS.ErrnoException) => {
     const reason =
       error.code === 'EADDRINUSE' ? 'is taken; PORT chooses another' : `cannot be listened on (${error.code})`
     return giveUp(`${configuration.host}:${configuration.port} ${reason}.`, 3)
   })
   const assembly = await assemble({ configuration, baseUrl: configuration.baseUrl ?? address, log })
-  server.on('request', assembly.app)
+  serveWith(assembly.app)
   void assembly.prepare().catch((error: unknown) => log.error({ err: error }, 'start failed'))
 
   closeWithGrace({ delay: STOP_WITHIN_MS, logger: false }, async ({ signal, err }) => {
