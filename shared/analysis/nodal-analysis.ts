@@ -3,6 +3,8 @@ import { GROUND } from '../circuit/netlist/netlist'
 import type { Complex, ComplexArray } from '../numerics/complex'
 import { complexArray } from '../numerics/complex'
 import { ProblemError } from '../problems'
+import type { Amplifiers } from './op-amp/amplifier'
+import { amplifierOf, requireAmplifiers } from './op-amp/amplifier'
 import { PencilSolver } from './pencil'
 import { requireSolvable } from './singular'
 import type { Drive, Tableau } from './tableau'
@@ -20,6 +22,8 @@ export interface CircuitConditions {
   output?: string | undefined
   /** Input that is driven, the others being held at 0 V; the first by default. */
   input?: string | undefined
+  /** Real op-amps by designator; an op-amp that is not among them is ideal. */
+  amplifiers?: Amplifiers | undefined
 }
 
 /** A circuit with its conditions, ready for any set of values. */
@@ -30,20 +34,23 @@ export interface PreparedCircuit {
   input: NetPort
   output: NetPort
   sourceOhm: number
+  amplifiers: Amplifiers
 }
 
 /** What drives the circuit: its source, or a unit current into one of its ports with the source at 0 V. */
 type Drivers = 'source' | 'ideal-source' | 'at-rest'
 
-const LOAD_OHM = ' load R'
+/** Designator of the load's resistance; the space keeps it apart from the circuit's own. */
+export const LOAD_OHM = ' load R'
 const LOAD_FARAD = ' load C'
 
 /**
  * Prepares a circuit for analysis.
- * @throws {ProblemError} 'output-unknown'; 'circuit-singular' when the circuit has no input or no output port
+ * @throws {ProblemError} 'output-unknown'; 'circuit-singular' when the circuit has no input or no output port;
+ *   'part-unknown', 'value-out-of-range' for the record of an op-amp
  */
 export function prepareCircuit(netlist: Netlist, conditions: CircuitConditions = {}): PreparedCircuit {
-  const { sourceOhm = 0, loadOhm = 0, loadFarad = 0 } = conditions
+  const { sourceOhm = 0, loadOhm = 0, loadFarad = 0, amplifiers = {} } = conditions
   const output = portOf(netlist.outputs, conditions.output, 'output')
   const input = portOf(netlist.inputs, conditions.input, 'input')
   const elements = [...netlist.elements]
@@ -55,7 +62,16 @@ export function prepareCircuit(netlist: Netlist, conditions: CircuitConditions =
   }
   load('resistor', LOAD_OHM, loadOhm)
   load('capacitor', LOAD_FARAD, loadFarad)
-  return { netlist, elements, loadValues, input, output, sourceOhm }
+  requireAmplifiers(amplifiers, elements)
+  for (const opamp of netlist.elements) {
+    if (opamp.kind !== 'opamp') continue
+    const farad = amplifierOf(amplifiers, opamp)?.inputFarad
+    if (!farad) continue
+    const ref = ` ${opamp.ref} C_in`
+    elements.push({ kind: 'capacitor', ref, a: opamp.plus, b: opamp.minus })
+    loadValues[ref] = farad
+  }
+  return { netlist, elements, loadValues, input, output, sourceOhm, amplifiers }
 }
 
 export function portOf(ports: readonly NetPort[], name: string | undefined, role: 'input' | 'output'): NetPort {
@@ -89,13 +105,13 @@ export function equationsOf(
       ? [...drive(port.plus, 1), ...drive(port.minus, -1)]
       : [...drive(port.plus, 0.5), ...drive(port.minus, -0.5)]
   })
-  const equations = tableau(netlist, elements, { ...values, ...loadValues }, drives, steady)
+  const equations = tableau(netlist, elements, { ...values, ...loadValues }, drives, steady, prepared.amplifiers)
   requireSolvable(equations, elements, steady)
   return equations
 }
 
 /**
- * H(j2πf): voltage at an output for 1 V at the input, by modified nodal analysis, op-amps ideal.
+ * H(j2πf): voltage at an output for 1 V at the input, by modified nodal analysis, op-amps as prepared: ideal or real.
  *
  * @param values ohm, farad, henry by designator
  * @param frequenciesHz Hz, ≥ 0; at 0 capacitors are open and inductors short, exactly

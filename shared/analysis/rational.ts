@@ -64,6 +64,17 @@ export function rationalTransferFunction(
   }
 }
 
+/**
+ * Natural frequencies of a circuit, the source at rest: every pole, whether an output shows it or not.
+ * @param values ohm, farad, henry by designator
+ * @returns rad/s; complex ones in conjugate pairs
+ * @throws {ProblemError} 'part-missing', 'circuit-singular'
+ */
+export function naturalFrequencies(prepared: PreparedCircuit, values: ElementValues): Complex[] {
+  const { pencil, rateRadPerSec } = equationsOf(prepared, values, false)
+  return pencilRoots(pencil, degreesOf(exactDeterminant(pencil)), rateRadPerSec)
+}
+
 /** The equations with the source as an unknown more and "output = 0" as its row: singular at the zeros of H. */
 function bordered({ pencil, rhs }: Tableau, read: [number, number][]): Pencil {
   const { size } = pencil

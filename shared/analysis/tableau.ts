@@ -2,6 +2,8 @@ import type { ElementValues, NetElement, NetPort, Netlist } from '../circuit/net
 import { GROUND } from '../circuit/netlist/netlist'
 import type { Problem } from '../problems'
 import { ProblemError } from '../problems'
+import type { Amplifiers } from './op-amp/amplifier'
+import { amplifierOf, inverseGain, isNullor } from './op-amp/amplifier'
 import type { Pencil } from './pencil'
 
 /** What an unknown of the equations is: the voltage of a node or the current of a branch. */
@@ -23,6 +25,8 @@ export interface Tableau {
   rhs: Float64Array
   /** Row (and column) of each drive's current. */
   driveColumn: Map<string, number>
+  /** Row of the law of each element; of an op-amp the row in which v(plus) − v(minus) stands. */
+  lawRow: Map<string, number>
   /** Column of a node's voltage, −1 for ground. */
   columnOf(node: string): number
   /** Typical rate of the elements, rad/s; where a search for poles starts. */
@@ -33,11 +37,13 @@ export interface Tableau {
  * Writes the equations of a circuit. Each element keeps its own current as unknown and its own law as a row
  * (v_a − v_b − R i = 0; sC(v_a − v_b) − i = 0; v_a − v_b − sL i = 0), so that no large conductance is ever added to a
  * small one: element ratios of many decades lose no digits. Shorts are merged nodes. An op-amp is a nullor: the row
- * v(plus) = v(minus) and a free current at its output.
+ * v(plus) = v(minus) and a free current at its output; or, with a record, the row v(plus) − v(minus) = v_x/A(s) and
+ * the inner source v_x behind its output resistance.
  *
  * @param elements with the load, if any
  * @param drives nodes held by sources
  * @param steady true at 0 Hz: capacitors open, inductors short
+ * @param amplifiers real op-amps by designator, the others ideal
  * @throws {ProblemError} 'part-missing' naming every part without value; 'value-out-of-range'
  * Source: C.-W. Ho, A. E. Ruehli, P. A. Brennan, IEEE Trans. Circuits Syst. CAS-22 (1975) 504; sparse tableau:
  * G. D. Hachtel, R. K. Brayton, F. G. Gustavson, IEEE Trans. Circuit Theory CT-18 (1971) 101.
@@ -48,6 +54,7 @@ export function tableau(
   values: ElementValues,
   drives: readonly Drive[],
   steady: boolean,
+  amplifiers: Amplifiers = {},
 ): Tableau {
   checkValues(elements, values)
   const merged = mergeShorts(netlist, elements, values, steady)
@@ -80,14 +87,32 @@ export function tableau(
     pencil.c.push(c)
   }
   const branch = (unknown: Unknown) => unknowns.push(unknown) - 1
+  const lawRow = new Map<string, number>()
   for (const element of elements) {
     if (element.kind === 'opamp') {
       const k = branch({ kind: 'current', of: 'opamp', name: element.ref })
       entry(columnOf(element.out), k, 1)
+      const amplifier = amplifierOf(amplifiers, element)
+      const inner = (name: string) => branch({ kind: 'voltage', nodes: [`${element.ref} ${name}`] })
+      let law = k
+      if (amplifier && !isNullor(amplifier)) {
+        const { perGain, perRate, secondSec } = inverseGain(amplifier)
+        law = inner('source')
+        entry(k, columnOf(element.out), 1)
+        entry(k, law, -1)
+        if (amplifier.outputOhm) entry(k, k, -amplifier.outputOhm)
+        if (secondSec > 0) {
+          const stage = inner('second pole')
+          entry(stage, stage, 1)
+          entry(stage, law, -1, -secondSec)
+          entry(law, stage, -perGain, -perRate)
+        } else entry(law, law, -perGain, -perRate)
+      }
+      lawRow.set(element.ref, law)
       const [plus, minus] = [columnOf(element.plus), columnOf(element.minus)]
       if (plus === minus) continue
-      entry(k, plus, 1)
-      entry(k, minus, -1)
+      entry(law, plus, 1)
+      entry(law, minus, -1)
       continue
     }
     const [a, b] = [columnOf(element.a), columnOf(element.b)]
@@ -95,6 +120,7 @@ export function tableau(
     const open = element.kind === 'capacitor' ? steady || value === 0 : value === Infinity
     if (a === b || open) continue
     const k = branch({ kind: 'current', of: 'element', name: element.ref })
+    lawRow.set(element.ref, k)
     entry(a, k, 1)
     entry(b, k, -1)
     const capacitor = element.kind === 'capacitor'
@@ -118,7 +144,7 @@ export function tableau(
   pencil.size = unknowns.length
   const rhs = new Float64Array(pencil.size)
   for (const [k, volt] of driven) rhs[k] = volt
-  return { pencil, unknowns, rhs, driveColumn, columnOf, rateRadPerSec: typicalRate(elements, values) }
+  return { pencil, unknowns, rhs, driveColumn, lawRow, columnOf, rateRadPerSec: typicalRate(elements, values) }
 }
 
 /** Reads a port's voltage off a solution: +1 at plus, −1 at minus. */

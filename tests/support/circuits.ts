@@ -1,4 +1,5 @@
 import { readFileSync } from 'node:fs'
+import type { Amplifiers } from '#shared/analysis/op-amp/amplifier'
 import type { ElementValues, NetElement, NetPort, Netlist } from '#shared/circuit/netlist/netlist'
 import type { Complex } from '#shared/numerics/complex'
 
@@ -16,6 +17,7 @@ export interface CircuitCheck {
   order: number
   topology: string
   parts: Record<string, number>
+  opamp: { A0: number; GBW_Hz: number; e_n: number; i_n: number }
   inputs: Record<string, number>
   outputs: Record<string, string>
   netlist: { source: string[]; ideal: string[]; one_pole: string[] }
@@ -29,8 +31,23 @@ export interface CircuitCheck {
   measured: Record<string, { ideal: Record<string, number>; one_pole: Record<string, number> }>
   response: { frequency_Hz: number[] } & Record<string, { ideal: CheckVector; one_pole: CheckVector }>
   poles_zeros_ideal: Record<string, { zeros: CheckVector; poles: CheckVector }>
+  poles_one_pole: CheckVector
   group_delay_ideal_s: { frequency_Hz: number[] } & Record<string, number[]>
   input_impedance: { frequency_Hz: number[]; ideal: CheckVector; one_pole: CheckVector; closed_form?: string }
+  noise: {
+    temperature_K: number
+    frequency_Hz: number[]
+    band_Hz: [number, number]
+    outputs: Record<string, { ideal: CheckNoise; one_pole: CheckNoise }>
+  }
+}
+
+/** Noise at one output: densities in V/√Hz, integrals in V rms. */
+export interface CheckNoise {
+  density_total: number[]
+  integrated_total: number
+  density_by_contributor: Record<string, number[]>
+  integrated_by_contributor: Record<string, number>
 }
 
 /** The circuits whose outside figures are kept in tests/checks/circuits. */
@@ -41,6 +58,12 @@ export const CHECK_CIRCUITS = [
   'lp1-noninverting-gain',
   'lp2-sallen-key-unity',
   'lp2-mfb',
+  'lp2-sallen-key-gain',
+  'hp2-sallen-key-unity',
+  'bp2-mfb',
+  'bp-cascade-lp1-hp1',
+  'ap1-noninverting',
+  'biquad-tow-thomas',
 ] as const
 
 export const readCheck = (name: string): CircuitCheck =>
@@ -59,6 +82,14 @@ export const netlistOfCheck = (name: string): Netlist => {
       : ports(Object.fromEntries(driven.map((node) => [node, node]))),
     outputs: ports(outputs),
   })
+}
+
+/** Every op-amp of a check circuit with the one record of its file: one pole, or ideal but for its noise. */
+export const amplifiersOfCheck = (name: string, model: 'ideal' | 'one_pole'): Amplifiers => {
+  const { A0, GBW_Hz, e_n, i_n } = readCheck(name).opamp
+  const gain = model === 'one_pole' ? { openLoopGain: A0, gbwHz: GBW_Hz } : {}
+  const opamps = netlistOfCheck(name).elements.filter(({ kind }) => kind === 'opamp')
+  return Object.fromEntries(opamps.map(({ ref }) => [ref, { ...gain, noiseVoltPerRtHz: e_n, noiseAmpPerRtHz: i_n }]))
 }
 
 export const valuesOfCheck = (name: string): ElementValues => readCheck(name).parts

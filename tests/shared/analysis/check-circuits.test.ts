@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { gainAtHighFrequency, halfPower, notch, peak } from '#shared/analysis/figures'
+import { bandKind, gainAtHighFrequency, halfPower, notch, peak } from '#shared/analysis/figures'
 import { inputImpedance, prepareCircuit, response } from '#shared/analysis/nodal-analysis'
 import { groupDelaySec, phaseRad } from '#shared/analysis/phase'
 import { gainAt, polePairs, rationalTransferFunction } from '#shared/analysis/rational'
@@ -85,14 +85,18 @@ describe.each(CHECK_CIRCUITS)('%s', (name) => {
     const h = rationalTransferFunction(prepared, values)
     const { figures } = check
     const [pair] = polePairs(h.poles)
+    const [pole] = h.poles
     const low = gainAt(h, 0).re
+    const banded = bandKind(h) === 'band-pass'
+    const edges = labels.map((label) => halfPower(rationalTransferFunction(prepared, values, label)))
+    const band = edges.find((one) => one?.lowerHz !== undefined && one.upperHz !== undefined)
     const found: Record<string, number | undefined> = {
-      f_0: pair?.naturalHz,
+      f_0: pair?.naturalHz ?? Math.hypot(pole!.re, pole!.im) / (2 * Math.PI),
       Q: pair?.q,
-      K: low === 0 ? gainAtHighFrequency(h) : low,
-      f_3dB: halfPower(h)?.lowerHz ?? halfPower(h)?.upperHz,
-      f_3dB_low: halfPower(h)?.lowerHz,
-      f_3dB_high: halfPower(h)?.upperHz,
+      K: banded ? gainAt(h, peak(h)!.frequencyHz).re : low === 0 ? gainAtHighFrequency(h) : low,
+      f_3dB: edges[0]?.lowerHz ?? edges[0]?.upperHz,
+      f_3dB_low: band?.lowerHz,
+      f_3dB_high: band?.upperHz,
     }
     const compared = Object.keys(found).filter((figure) => figures[figure] !== undefined)
     expect(compared.length).toBeGreaterThan(1)
