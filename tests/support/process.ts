@@ -64,7 +64,7 @@ export async function serverProcess(environment: Record<string, string>): Promis
 
 /** Status of an address; 0 when nothing answers. */
 export const statusOf = (url: string): Promise<number> =>
-  fetch(url).then(
+  fetch(url, { signal: AbortSignal.timeout(5000) }).then(
     (answer) => answer.status,
     () => 0,
   )
