@@ -14,7 +14,7 @@ import { formatQuantity } from '../quantities/format'
 import type { Unit } from '../quantities/unit'
 import type { SizedSet, SizingOutcome } from '../sizing/recipe'
 import { circuitFigures } from './circuit-figures'
-import { sizeStage } from './size'
+import { changesResponse, fittedValues, sizeUnderConditions } from './size-under-conditions'
 import type { Stage, StageAsked } from './stage'
 import { computeResults, defaultValues, vectorOf } from './values'
 
@@ -30,7 +30,7 @@ const WORTH_SHOWING = 1e-3
  * @throws {ProblemError} 'circuit-singular' when the circuit has no unique solution at these values
  */
 export function evaluateStage(stage: Stage, asked: StageAsked): StageOutcome {
-  const sizing = sizeStage(stage, asked)
+  const sizing = sizeUnderConditions(stage, asked)
   const values = fittedValues(stage, asked, sizing?.best ?? null)
   const ideal = circuitFigures(stage, values, {})
   const loaded = changesResponse(asked.conditions) ? circuitFigures(stage, values, asked.conditions) : null
@@ -61,18 +61,6 @@ export function evaluateStage(stage: Stage, asked: StageAsked): StageOutcome {
     setsTried: sizing?.setsTried ?? 0,
     runnersUp: (sizing?.runnersUp ?? []).map((one) => runnerUp(stage, values, one)),
   }
-}
-
-const changesResponse = ({ sourceOhm, loadOhm, loadFarad }: StageAsked['conditions']) =>
-  Boolean(sourceOhm || loadOhm || loadFarad)
-
-function fittedValues(stage: Stage, asked: StageAsked, best: SizedSet | null): Record<string, number> {
-  const values = { ...defaultValues(stage), ...asked.held }
-  for (const part of stage.parts) {
-    const sized = best?.values.get(stage.slots.get(part.name)!)
-    if (sized !== undefined) values[part.name] = sized
-  }
-  return values
 }
 
 function partOutcomes(stage: Stage, asked: StageAsked, values: Record<string, number>, sizing: SizingOutcome | null) {

@@ -49,6 +49,41 @@ describe('a source resistance', () => {
   })
 })
 
+describe('sizing under a source resistance', () => {
+  it('makes up for it: Ri and the source together give the gain', () => {
+    const { results, values } = evaluated(inverting, { targets: { f_c: 2400, K: -2 }, conditions: { sourceOhm: 1000 } })
+    expect(values['Rf']! / (values['Ri']! + 1000)).toBeCloseTo(2, 1)
+    expect(Math.abs(results['K']!.relativeError!)).toBeLessThan(0.005)
+    expect(Math.abs(results['f_c']!.relativeError!)).toBeLessThan(0.005)
+    expect(results['K']!.target).toBe(-2)
+  })
+
+  it('makes up for it where it moves the corner', () => {
+    const { results } = evaluated(stageOf('lp1-ni'), { targets: { f_c: 1000, K: 4 }, conditions: { sourceOhm: 2200 } })
+    // Half a step of E96. IEC 60063.
+    expect(Math.abs(results['f_c']!.relativeError!)).toBeLessThan(0.013)
+    expect(results['f_c']!.underConditions).toBeDefined()
+  })
+
+  it('keeps held parts, and shows the error that is left', () => {
+    const { results, values: fitted } = evaluated(inverting, {
+      values: { Ri: 10e3, Rf: 20e3 },
+      targets: { K: -2 },
+      conditions: { sourceOhm: 1000 },
+    })
+    expect([fitted['Ri'], fitted['Rf']]).toEqual([10e3, 20e3])
+    expect(results['K']!.relativeError).toBeCloseTo(1 - 10 / 11, 9)
+  })
+
+  it('of the multiple-feedback low-pass comes within two per cent of all three targets', () => {
+    const { results } = evaluated(stageOf('lp2-mfb'), {
+      targets: { f_0: 1800, Q: 0.9, K: -2 },
+      conditions: { sourceOhm: 600 },
+    })
+    for (const name of ['f_0', 'Q', 'K']) expect(Math.abs(results[name]!.relativeError!), name).toBeLessThan(0.02)
+  })
+})
+
 describe('conditions that are only carried', () => {
   it('change no figure', () => {
     const { results } = evaluated(inverting, {
