@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { evaluated, stageOf } from '../../support/stages'
+import { evaluated, stageOf, worstErrorOf } from '../../support/stages'
 
 const inverting = stageOf('lp1-inv')
 const values = { Ri: 10e3, Rf: 100e3, Cf: 1.5e-9 }
@@ -76,11 +76,13 @@ describe('sizing under a source resistance', () => {
   })
 
   it('of the multiple-feedback low-pass comes within two per cent of all three targets', () => {
-    const { results } = evaluated(stageOf('lp2-mfb'), {
-      targets: { f_0: 1800, Q: 0.9, K: -2 },
-      conditions: { sourceOhm: 600 },
-    })
-    for (const name of ['f_0', 'Q', 'K']) expect(Math.abs(results[name]!.relativeError!), name).toBeLessThan(0.02)
+    const stage = stageOf('lp2-mfb')
+    const targets = { f_0: 1800, Q: 0.9, K: -2 }
+    const conditions = { sourceOhm: 600 }
+    const ideal = evaluated(stage, { targets })
+    // The parts sized for an ideal source are 4.2 % off with this one.
+    expect(worstErrorOf(evaluated(stage, { values: ideal.values, targets, conditions }))).toBeGreaterThan(0.04)
+    expect(worstErrorOf(evaluated(stage, { targets, conditions }))).toBeLessThan(0.02)
   })
 })
 
