@@ -184,7 +184,7 @@ describe('without a pointer', () => {
       await page.keyboard.press('Enter')
       await page.waitForURL(/\/sizings\/S-\d+$/)
       await focused(page, 'main h1')
-      expect(await textOf(page.locator('main h1'))).toMatch(/S-\d+/)
+      expect(await textOf(page.locator('main h1').locator('visible=true'))).toMatch(/S-\d+/)
       const number = /S-\d+$/.exec(page.url())![0]
 
       // The rest of the sizing's stops, and by the header back to the shelf.
@@ -194,7 +194,7 @@ describe('without a pointer', () => {
       await page.keyboard.press('Enter')
       await page.waitForURL(/\?search=lp2/)
       await page.goto(`/sizings/${number}`)
-      await page.locator('main h1').waitFor()
+      await page.locator('main h1').locator('visible=true').waitFor()
       await person.tabTo('a[href="/sizings"]')
       await page.keyboard.press('Enter')
       await page.getByRole('link', { name: number }).waitFor()
@@ -241,7 +241,7 @@ describe('single keys', () => {
       await page.keyboard.press('Control+K')
       await focused(page, 'input[name="search"]')
 
-      await page.locator('main h1').focus()
+      await page.getByRole('button', { name: 'Save sizing' }).focus()
       await page.keyboard.press('?')
       const keys = page.getByRole('dialog', { name: 'Keys' })
       await keys.waitFor()
@@ -252,7 +252,7 @@ describe('single keys', () => {
       }
       await page.keyboard.press('Escape')
       await keys.waitFor({ state: 'hidden' })
-      await focused(page, 'main h1')
+      await focused(page, '.bench-acts button.filled')
       await page.keyboard.press('/')
       await focused(page, 'input[name="search"]')
       await context.close()
@@ -272,11 +272,11 @@ describe('single keys', () => {
       await page.keyboard.press('Space')
       await page.goto('/blocks/lp1-inv')
       await benchReady(page)
-      await page.locator('main h1').focus()
+      await page.getByRole('button', { name: 'Save sizing' }).focus()
       await page.keyboard.press('?')
       await page.keyboard.press('/')
       expect(await page.getByRole('dialog').count()).toBe(0)
-      await focused(page, 'main h1')
+      await focused(page, '.bench-acts button.filled')
       await page.keyboard.press('Control+K')
       await focused(page, 'input[name="search"]')
       await context.close()
