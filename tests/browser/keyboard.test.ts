@@ -245,10 +245,11 @@ describe('single keys', () => {
       await page.keyboard.press('?')
       const keys = page.getByRole('dialog', { name: 'Keys' })
       await keys.waitFor()
-      expect(await keys.evaluate((dialog) => dialog.contains(document.activeElement))).toBe(true)
+      const isInside = () => keys.evaluate((dialog) => dialog.contains(document.activeElement))
+      await expect.poll(isInside, soon).toBe(true)
       for (let k = 0; k < 8; k += 1) {
         await page.keyboard.press('Tab')
-        expect(await keys.evaluate((dialog) => dialog.contains(document.activeElement))).toBe(true)
+        await expect.poll(isInside, soon).toBe(true)
       }
       await page.keyboard.press('Escape')
       await keys.waitFor({ state: 'hidden' })
