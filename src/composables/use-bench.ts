@@ -6,7 +6,9 @@ import { ProblemError } from '#shared/problems'
 import {
   defaultValues,
   evaluateStage,
+  logFrequencies,
   nothingAsked,
+  PLOT_POINTS,
   plotFrequencies,
   selfCheck,
   stagePhase,
@@ -14,6 +16,8 @@ import {
   type Stage,
   type StageAsked,
 } from '#shared/stage/index'
+import { plotScale } from '../components/plot/plot-scale'
+import { useResting } from './use-resting'
 import { emptyState, isEmptyState, type BenchState } from './stage-state'
 
 /** Sets within this error count as equal on the page; a house rule. */
@@ -66,10 +70,19 @@ export function useBench(stage: Stage, start: BenchState = emptyState()) {
   })
   const values = computed(() => outcome.value.values)
 
+  /** Range of frequencies that the values ask for, and the one shown, which follows when typing rests. */
+  const wantedRange = computed((): [number, number] => {
+    const [fromHz = 1, toHz = 10] = plotFrequencies(stage, values.value, 2)
+    return [fromHz, toHz]
+  })
+  const shownRange = useResting(wantedRange, (a, b) => a[0] === b[0] && a[1] === b[1])
+
   const curve = computed<BenchCurve>(() => {
     const at = values.value
     const { conditions, output } = asked.value
-    const frequenciesHz = plotFrequencies(stage, at)
+    const fromHz = Math.min(wantedRange.value[0], shownRange.value[0])
+    const toHz = Math.max(wantedRange.value[1], shownRange.value[1])
+    const frequenciesHz = Array.from(logFrequencies(fromHz, toHz, PLOT_POINTS))
     const { re, im } = stageResponse(stage, at, conditions, output, frequenciesHz)
     return {
       frequenciesHz,
@@ -77,6 +90,8 @@ export function useBench(stage: Stage, start: BenchState = emptyState()) {
       phaseDegrees: stagePhase(stage, at, conditions, output, frequenciesHz).map((rad) => (180 * rad) / Math.PI),
     }
   })
+  const wantedScale = computed(() => plotScale(wantedRange.value, curve.value.magnitudeDb, curve.value.phaseDegrees))
+  const scale = useResting(wantedScale, (a, b) => JSON.stringify(a) === JSON.stringify(b))
 
   const check = useLateCheck(stage, values)
 
@@ -126,6 +141,7 @@ export function useBench(stage: Stage, start: BenchState = emptyState()) {
     outcome,
     values,
     curve,
+    scale,
     check,
     failure,
     inUse,

@@ -11,9 +11,12 @@ export interface PlotScale {
 
 const STEPS = 4
 
-/** Scale that rests while values change a little: whole decades, 20 dB and 45° steps. */
+/**
+ * Scale of a response: the range of frequencies, 20 dB and 45° steps, so that it rests while values change a little.
+ * @param range lowest and highest frequency shown, Hz
+ */
 export function plotScale(
-  frequenciesHz: readonly number[],
+  [fromHz, toHz]: readonly [number, number],
   magnitudeDb: readonly number[],
   phaseDegrees: readonly number[],
 ): PlotScale {
@@ -26,8 +29,8 @@ export function plotScale(
     [45, 90, 180, 360].find((step) => Math.ceil((most - 0.01) / step) * step - STEPS * step <= least + 0.01) ?? 720
   const topDegrees = Math.ceil((most - 0.01) / unit) * unit
   return {
-    fromHz: frequenciesHz[0] ?? 1,
-    toHz: frequenciesHz.at(-1) ?? 10,
+    fromHz,
+    toHz,
     topDb,
     bottomDb: topDb - 20 * STEPS,
     topDegrees,
