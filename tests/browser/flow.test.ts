@@ -75,9 +75,11 @@ describe('from sign-in to a linked sizing', () => {
       await benchReady(page)
       expect(await textOf(page.locator('h1'))).toBe('Inverting low-pass, first order')
 
+      const curvesAtFirst = await curves(page)
       await partField(page, 'Rf').fill('10k')
       await expect.poll(() => textOf(live(page, 'Rf')), soon).toBe('10 kΩ')
-      const curveBefore = await page.locator('.response-plot .canvas path').evaluateAll(pathsOf)
+      await expect.poll(() => curves(page), soon).not.toEqual(curvesAtFirst)
+      const curvesAtTenKiloohm = await curves(page)
       await page.getByRole('button', { name: 'Start over' }).click()
       for (const [part, series] of [
         ['Ri', 'E96'],
@@ -93,11 +95,9 @@ describe('from sign-in to a linked sizing', () => {
       expect(shown['K']).toMatch(/^-2\.00.* 6\.02\d? dB$/)
       expect(await textOf(errorOf(page, 'f_c'))).toMatch(/^\+0\.02/)
       for (const part of ['Ri', 'Rf', 'Cf']) expect(await valueIn(drawnField(page, part))).toBe(shown[part])
-      expect(await textOf(live(page, 'Rf'))).toBe('44.2 kΩ')
-      expect(await textOf(live(page, 'f_c'))).toBe(shown['f_c'])
-      await expect
-        .poll(() => page.locator('.response-plot .canvas path').evaluateAll(pathsOf), soon)
-        .not.toEqual(curveBefore)
+      await expect.poll(() => textOf(live(page, 'Rf')), soon).toBe('44.2 kΩ')
+      await expect.poll(() => textOf(live(page, 'f_c')), soon).toBe(shown['f_c'])
+      await expect.poll(() => curves(page), soon).not.toEqual(curvesAtTenKiloohm)
       // −3.01 dB under 6.02 dB at the corner.
       const plot = page.locator('.response-plot')
       expect(plain((await plot.getAttribute('aria-valuetext')) ?? '')).toMatch(/^2\.40\d? kHz, 3\.0\d dB, 13[45]/)
@@ -291,7 +291,9 @@ describe('addresses and what is left unfinished', () => {
   )
 })
 
-const pathsOf = (paths: Element[]) => paths.map((path) => path.getAttribute('d') ?? '')
+/** Every line of the plot. */
+const curves = (page: Page): Promise<string[]> =>
+  page.locator('.response-plot .canvas path').evaluateAll((paths) => paths.map((path) => path.getAttribute('d') ?? ''))
 
 /** Keys of what the browser keeps for this page. */
 const keptIn = (page: Page): Promise<string> =>
