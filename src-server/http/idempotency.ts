@@ -6,7 +6,7 @@ import type { Queries } from '../database'
 import { idempotencyKeys } from '../database/tables/idempotency-keys'
 
 const KEY_FORM = /^[A-Za-z0-9._:-]{8,80}$/
-const WORK_MS = 20_000
+const WORK_MS = 6000
 const WAIT_MS = 8000
 const KEPT_MS = 7 * 24 * 3600 * 1000
 
