@@ -15,7 +15,9 @@ import {
 
 const FRAME_MS = 1000 / 60
 const KEYS = Array.from({ length: 40 }, (_, k) => (k % 4 < 2 ? 'ArrowUp' : 'ArrowDown'))
-const TYPED = Array.from({ length: 40 }, (_, k) => (k % 2 ? 'Backspace' : '7'))
+/** A value typed letter by letter and taken away again: 1, 11, 11k, 11k5. */
+const LETTERS = ['1', '1', 'k', '5', 'Backspace', 'Backspace', 'Backspace', 'Backspace']
+const TYPED = Array.from({ length: 48 }, (_, k) => LETTERS[k % LETTERS.length])
 const BLOCKS = [
   { code: 'lp1-inv', part: 'Rf' },
   { code: 'lp2-mfb', part: 'R2' },
