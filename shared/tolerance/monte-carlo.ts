@@ -8,7 +8,7 @@ import type { ResponseDb } from './response-db'
 import type { Spread } from './spread'
 import { nominalValues, requireSpreads } from './spread'
 import type { Percentile, SampleStatistics } from './statistics'
-import { PERCENTILES, percentilesOf, sampleStatistics } from './statistics'
+import { PERCENTILES, percentilesInPlace, sampleStatistics } from './statistics'
 import type { Share } from './wilson'
 import { wilsonShare } from './wilson'
 import { yieldSentence } from './yield-sentence'
@@ -109,7 +109,7 @@ export function* monteCarlo(
   if (response) {
     const percentilesDb = bandsOf(points)
     for (let k = 0; k < points; k++) {
-      const found = percentilesOf(levels[k]!.filter((level) => !Number.isNaN(level)).sort())
+      const found = percentilesInPlace(levels[k]!)
       for (const p of PERCENTILES) percentilesDb[p][k] = found[p]
       yield { buildsDone: builds, builds }
     }

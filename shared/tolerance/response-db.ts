@@ -4,6 +4,7 @@ import { compileComplexFormula } from '../formula/compile-complex'
 import type { Formula } from '../formula/parse'
 import type { FigureSet } from './figure-set'
 import { circuitFigureSet, formulaScope } from './figure-set'
+import { compileSquaredMagnitude } from './rational-formula'
 import type { Spread } from './spread'
 
 /** |H| in dB at frequencies, as a function of the parts' values; each frequency is a figure of its own. */
@@ -30,6 +31,18 @@ export function formulaResponseDb(
   results: Readonly<Record<string, Formula>> = {},
 ): ResponseDb {
   const scope = formulaScope(spreads, results)
+  const squared = compileSquaredMagnitude(formula, scope.names)
+  if (squared) {
+    const squaredRate = Float64Array.from(frequenciesHz, (f) => (2 * Math.PI * f) ** 2)
+    return {
+      names: namesOf(frequenciesHz),
+      frequenciesHz: Float64Array.from(frequenciesHz),
+      evaluate(values, out) {
+        squared(scope.fill(values), squaredRate, out)
+        for (let k = 0; k < out.length; k++) out[k] = 10 * Math.log10(out[k]!)
+      },
+    }
+  }
   const h = compileComplexFormula(formula, scope.names)
   const radPerSec = Float64Array.from(frequenciesHz, (f) => 2 * Math.PI * f)
   const value = new Float64Array(2)

@@ -1,3 +1,5 @@
+import { selectAllInPlace } from '../numerics/select'
+
 export const PERCENTILES = [1, 5, 50, 95, 99] as const
 export type Percentile = (typeof PERCENTILES)[number]
 
@@ -55,6 +57,22 @@ export function percentileOf(sorted: Float64Array, percent: number): number {
   const below = Math.floor(place)
   const [a, b] = [sorted[below] ?? NaN, sorted[Math.min(below + 1, sorted.length - 1)] ?? NaN]
   return a === b || place === below ? a : a + (b - a) * (place - below)
+}
+
+/**
+ * The same percentiles without sorting everything.
+ * @param values NaN are left out; reordered in place
+ */
+export function percentilesInPlace(values: Float64Array): Record<Percentile, number> {
+  let count = 0
+  for (const value of values) if (!Number.isNaN(value)) values[count++] = value
+  const kept = values.subarray(0, count)
+  const places = PERCENTILES.flatMap((percent) => {
+    const below = Math.floor((percent / 100) * (count - 1))
+    return [below, Math.min(below + 1, count - 1)]
+  })
+  if (count > 0) selectAllInPlace(kept, places)
+  return percentilesOf(kept)
 }
 
 function histogramOf(sorted: Float64Array, bins: number): Histogram {

@@ -1,10 +1,11 @@
 import { describe, expect, it } from 'vitest'
+import { seededRandom } from '#shared/numerics/random'
 import { riddersLimit } from '#shared/numerics/ridders'
 import { corners } from '#shared/tolerance/corners'
 import { drift, driftOfPpm } from '#shared/tolerance/drift'
 import { sensitivities } from '#shared/tolerance/sensitivities'
 import { spreadsOf } from '#shared/tolerance/spread'
-import { percentileOf, sampleStatistics } from '#shared/tolerance/statistics'
+import { percentileOf, percentilesInPlace, percentilesOf, sampleStatistics } from '#shared/tolerance/statistics'
 import { wilsonShare } from '#shared/tolerance/wilson'
 import { yieldSentence } from '#shared/tolerance/yield-sentence'
 import { figuresOf } from '../../support/tolerance'
@@ -118,6 +119,13 @@ describe('statistics', () => {
     [[7], 99, 7],
   ])('interpolates percentiles of %j at %d %%', (sorted, percent, wanted) => {
     expect(percentileOf(Float64Array.from(sorted), percent)).toAgreeWith(wanted, { relative: 1e-12 })
+  })
+
+  it.each([0, 1, 2, 3, 20, 1000])('gives the same percentiles of %d values without sorting', (count) => {
+    const random = seededRandom(count)
+    const values = Float64Array.from({ length: count }, () => Math.round(random() * 300))
+    const wanted = percentilesOf(values.slice().sort())
+    expect(percentilesInPlace(Float64Array.from([NaN, ...values, NaN]))).toEqual(wanted)
   })
 
   it('gives mean, deviation and a histogram that holds every build', () => {
