@@ -38,7 +38,8 @@ export interface Tableau {
  * (v_a − v_b − R i = 0; sC(v_a − v_b) − i = 0; v_a − v_b − sL i = 0), so that no large conductance is ever added to a
  * small one: element ratios of many decades lose no digits. Shorts are merged nodes. An op-amp is a nullor: the row
  * v(plus) = v(minus) and a free current at its output; or, with a record, the row v(plus) − v(minus) = v_x/A(s) and
- * the inner source v_x behind its output resistance.
+ * the inner source v_x behind its output resistance. A controlled source is the row v_a − v_b = gain·(v_plus − v_minus)
+ * and a free current from a to b.
  *
  * @param elements with the load, if any
  * @param drives nodes held by sources
@@ -76,6 +77,8 @@ export function tableau(
   for (const element of elements)
     for (const node of element.kind === 'opamp' ? [element.plus, element.minus, element.out] : [element.a, element.b])
       columnOf(node)
+  const controlled = netlist.controlled ?? []
+  for (const { a, b, plus, minus } of controlled) [a, b, plus, minus].forEach(columnOf)
   for (const port of [...netlist.inputs, ...netlist.outputs]) [port.plus, port.minus].forEach(columnOf)
 
   const pencil: Pencil = { size: 0, row: [], column: [], g: [], c: [] }
@@ -129,6 +132,22 @@ export function tableau(
     if (capacitor) entry(k, k, -1)
     else if (element.kind === 'resistor') entry(k, k, -value)
     else entry(k, k, 0, -value)
+  }
+  for (const { ref, a, b, plus, minus, gain } of controlled) {
+    const k = branch({ kind: 'current', of: 'element', name: ref })
+    if (columnOf(a) !== columnOf(b)) {
+      entry(columnOf(a), k, 1)
+      entry(columnOf(b), k, -1)
+    }
+    const law = new Map<number, number>()
+    const terms: [string, number][] = [
+      [a, 1],
+      [b, -1],
+      [plus, -gain],
+      [minus, gain],
+    ]
+    for (const [node, g] of terms) law.set(columnOf(node), (law.get(columnOf(node)) ?? 0) + g)
+    for (const [column, g] of law) if (g !== 0) entry(k, column, g)
   }
   const driveColumn = new Map<string, number>()
   const driven: [number, number][] = []

@@ -20,6 +20,17 @@ export interface OpampElement {
 
 export type NetElement = PassiveElement | OpampElement
 
+/** A voltage source that follows another voltage: v(a) − v(b) = gain·(v(plus) − v(minus)). */
+export interface ControlledSource {
+  ref: string
+  a: string
+  b: string
+  plus: string
+  minus: string
+  /** V/V. */
+  gain: number
+}
+
 export interface NetPort {
   name: string
   plus: string
@@ -37,6 +48,8 @@ export interface Netlist {
   outputs: NetPort[]
   /** Nodes held at ground for signals: references without impedance, and supplies. */
   signalGrounds: string[]
+  /** Sources of E cards, and of V cards that share a drive; none when left out. */
+  controlled?: ControlledSource[] | undefined
 }
 
 /** Values of the passive elements by designator: ohm, farad or henry, by kind. */
