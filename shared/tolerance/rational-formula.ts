@@ -32,22 +32,33 @@ export function compileSquaredMagnitude(formula: Formula, names: readonly string
   const { num, den, fill } = ratio
   return (values, squaredRate, out) => {
     fill(values)
-    for (let k = 0; k < out.length; k++) {
-      const x = squaredRate[k]!
-      out[k] = squaredAt(num, x) / squaredAt(den, x)
-    }
+    squaredInto(num, squaredRate, out.fill(1), false)
+    squaredInto(den, squaredRate, out, true)
   }
 }
 
-/** |P(jω)|² from ω²: even powers make the real part, odd ones the imaginary part. */
-function squaredAt(p: Float64Array, x: number): number {
-  let even = 0
-  let odd = 0
-  for (let k = p.length - 1; k >= 0; k--) {
-    if (k & 1) odd = p[k]! - x * odd
-    else even = p[k]! - x * even
+/**
+ * Multiplies or divides by |P(jω)|²: even powers make the real part, odd ones the imaginary part. Up to the fourth
+ * degree, which covers most blocks, the coefficients stay in registers.
+ */
+function squaredInto(p: Float64Array, squaredRate: Float64Array, out: Float64Array, divide: boolean) {
+  const short = p.length <= 5
+  const at = (k: number) => p[k] ?? 0
+  const [p0, p1, p2, p3, p4] = [at(0), at(1), at(2), at(3), at(4)]
+  for (let k = 0; k < out.length; k++) {
+    const x = squaredRate[k]!
+    const even = short ? p0 - x * (p2 - x * p4) : horner(p, 0, x)
+    const odd = short ? p1 - x * p3 : horner(p, 1, x)
+    const size = even * even + x * odd * odd
+    out[k] = divide ? out[k]! / size : out[k]! * size
   }
-  return even * even + x * odd * odd
+}
+
+/** p₀ − x·(p₂ − x·(p₄ − …)) from the first coefficient given. */
+function horner(p: Float64Array, first: 0 | 1, x: number): number {
+  let sum = 0
+  for (let k = p.length - 1 - ((p.length - 1 - first) & 1); k >= first; k -= 2) sum = p[k]! - x * sum
+  return sum
 }
 
 function ratioOf(tree: Tree, real: (tree: Tree) => Evaluate): Ratio | null {

@@ -46,6 +46,8 @@ describe('a response that is rational in s', () => {
     'par(R2, 1/(s*C1))/(R1 + par(R2, 1/(s*C1)))',
     'ser(R1, 1/(s*C1))/ser(R1, R2, 1/(s*C1))',
     '1/(1 + s*R1*C1)^3',
+    '(1 + s*R2*C2)^2/(1 + s*R1*C1)^5',
+    '1/((1 + s*R1*C1)^4*(1 + s*R2*C2)^4)',
     '(s*R1*C1)^-2 - 1',
     '-exp(-R2/R1)/(1 + s*R1*C1 - (s*R1*C1)/(1 + s*R2*C2))',
     'R2/R1',
