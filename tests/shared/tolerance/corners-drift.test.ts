@@ -137,7 +137,7 @@ describe('statistics', () => {
     expect(found.undefinedBuilds).toBe(1)
   })
 
-  // Source: R. G. Newcombe, Stat. Med. 17 (1998) 857, table I, method 3 (score), four decimals.
+  // Source: R. G. Newcombe, Stat. Med. 17 (1998) 857, score method, four decimals; from memory.
   it.each([
     [81, 263, 0.2553, 0.3662],
     [15, 148, 0.0624, 0.1605],
