@@ -43,7 +43,7 @@ export function openDatabase(settings: DatabaseSettings) {
     ...settings,
     url: settings.runtimeUrl,
     onTrouble: (error) => {
-      if (state === 'ready') leave(error)
+      if (state === 'ready') void suspect(error)
     },
   })
   const leave = (error: unknown) => {
@@ -53,6 +53,20 @@ export function openDatabase(settings: DatabaseSettings) {
     void comeBack()
   }
   const probe = () => pool.query({ sql: 'SELECT 1', timeout: PROBE_WITHIN_MS })
+  let isSuspected = false
+  /** One statement that took too long is no reason to turn everybody away: the database is asked first. */
+  const suspect = async (error: unknown) => {
+    if (databaseErrorOf(error)?.code !== 'PROTOCOL_SEQUENCE_TIMEOUT') return leave(error)
+    if (isSuspected) return
+    isSuspected = true
+    try {
+      await probe()
+    } catch {
+      if (state === 'ready') leave(error)
+    } finally {
+      isSuspected = false
+    }
+  }
   const takeNotes = async () => {
     notes = await durabilityNotes(pool)
     for (const note of notes) log[note.level === 'note' ? 'info' : 'warn']({ setting: note.setting }, note.detail)
