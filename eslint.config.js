@@ -51,7 +51,7 @@ export default typescript.config(
     ]),
   },
   {
-    files: ['shared/{quantities,preferred-values,numerics,circuit,formula,analysis,noise,sizing}/**/*.ts'],
+    files: ['shared/{quantities,preferred-values,numerics,circuit,formula,analysis,symbolic,noise,sizing}/**/*.ts'],
     rules: noReach([
       {
         group: ['zod', 'vue', 'vue-*', 'pinia', 'quasar', 'express', 'node:*', 'drizzle-orm*', 'mysql2*'],

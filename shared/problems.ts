@@ -14,6 +14,7 @@ export const PROBLEM_TITLES = {
   'series-unknown': 'No such preferred series',
   'circuit-not-read': 'The circuit text has errors',
   'circuit-singular': 'The circuit has no unique solution',
+  'circuit-too-large': 'The circuit is too large for this computation',
   'calculator-not-read': 'The calculator text has errors',
   'formula-not-read': 'A formula could not be read',
   'formula-dimension': 'The dimensions of a formula do not fit',

@@ -16,6 +16,7 @@ export const PROBLEM_STATUS: Readonly<Record<ProblemCode, number>> = {
   'series-unknown': 422,
   'circuit-not-read': 422,
   'circuit-singular': 422,
+  'circuit-too-large': 422,
   'calculator-not-read': 422,
   'formula-not-read': 422,
   'formula-dimension': 422,

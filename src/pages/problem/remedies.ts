@@ -20,6 +20,8 @@ export const REMEDIES: Readonly<Record<ProblemCode, string>> = {
   'circuit-not-read': 'Line and column say where the circuit text stops making sense. The help gives its grammar.',
   'circuit-singular':
     'Some node is left floating, or two sources fight. See that every node has a path to the reference and every amplifier its feedback.',
+  'circuit-too-large':
+    'In part names the answer would be too long to read. Ask for the response in numbers, which knows no such limit.',
   'calculator-not-read': 'Line and column say where the calculator text stops making sense. The help gives its form.',
   'formula-not-read': 'The formula uses a name or a function that is not known here. The help lists them.',
   'formula-dimension': 'The formula adds or compares quantities of different kinds, such as ohms and farads.',
