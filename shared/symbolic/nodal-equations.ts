@@ -6,13 +6,13 @@ import { drivenNodes, groundsOf } from './nodal-minors'
  * The equations that H(s) follows from, as TeX: what holds the sources' nodes, v(plus) = v(minus) for each op-amp, and
  * the sum of currents that leave each node which neither a source nor an op-amp's output holds.
  *
- * @param nodes those nodes
+ * @param nodes those nodes; the ones that a source joins in one group
  * @param nameOf name of a passive part in H(s)
  */
 export function nodalEquations(
   netlist: Netlist,
   input: NetPort,
-  nodes: readonly string[],
+  nodes: readonly (readonly string[])[],
   nameOf: (ref: string) => string,
 ): string[] {
   const driven = drivenNodes(netlist, input)
@@ -31,11 +31,15 @@ export function nodalEquations(
   }
   for (const one of netlist.elements)
     if (one.kind === 'opamp' && one.minus === one.out) equations.push(`${nodeVoltage(one.out)} = ${voltage(one.plus)}`)
-  for (const node of nodes) {
+  const between = (plus: string, minus: string) =>
+    zero.has(minus) ? voltage(plus) : zero.has(plus) ? `-${voltage(minus)}` : `${voltage(plus)} - ${voltage(minus)}`
+  for (const { a, b, plus, minus, gain } of netlist.controlled ?? [])
+    equations.push(`${between(a, b)} = ${numberTex(gain)}\\left(${between(plus, minus)}\\right)`)
+  for (const group of nodes) {
     const currents = netlist.elements.flatMap((one) => {
-      if (one.kind === 'opamp' || one.a === one.b || (one.a !== node && one.b !== node)) return []
-      const other = one.a === node ? one.b : one.a
-      const across = zero.has(other) ? nodeVoltage(node) : `${nodeVoltage(node)} - ${nodeVoltage(other)}`
+      if (one.kind === 'opamp' || group.includes(one.a) === group.includes(one.b)) return []
+      const [node, other] = group.includes(one.a) ? [one.a, one.b] : [one.b, one.a]
+      const across = between(node, other)
       const part = nameTex(nameOf(one.ref))
       if (one.kind === 'resistor') return [`\\frac{${across}}{${part}}`]
       if (one.kind === 'inductor') return [`\\frac{${across}}{s\\,${part}}`]
@@ -56,3 +60,5 @@ export function portVoltage(netlist: Netlist, { plus, minus }: NetPort): string 
 /** Node names keep letters, digits, signs and underscores. */
 const nodeVoltage = (node: string) =>
   `V_{\\mathrm{${node.replace(/[^\p{L}\p{N}_+-]/gu, '').replace(/_/g, '\\_') || 'x'}}}`
+
+const numberTex = (value: number) => String(value).replace(/e\+?(-?\d+)/, '\\cdot 10^{$1}')

@@ -1,5 +1,5 @@
 import { portOf } from '../analysis/nodal-analysis'
-import type { NetPort, Netlist, PassiveElement } from '../circuit/netlist/netlist'
+import type { ControlledSource, NetPort, Netlist, PassiveElement } from '../circuit/netlist/netlist'
 import { GROUND } from '../circuit/netlist/netlist'
 import { ProblemError } from '../problems'
 
@@ -10,7 +10,7 @@ export const TERMS_MAX = 2000
 const WORK_MAX = 2_000_000
 const NODES_MAX = 24
 
-/** A sum of products of different admittances: coefficient by the set of passive elements, one bit each. */
+/** A sum of products of different admittances and gains: coefficient by the set of elements, one bit each. */
 export type AdmittanceSum = ReadonlyMap<number, number>
 
 /** H as a quotient of sums of products of admittances. */
@@ -18,8 +18,10 @@ export interface AdmittanceRatio {
   passive: PassiveElement[]
   numerator: AdmittanceSum
   denominator: AdmittanceSum
-  /** Nodes at which Kirchhoff's current law is written. */
-  nodes: string[]
+  /** Sources of finite gain; their gains have the bits after those of the passive elements. */
+  sources: readonly ControlledSource[]
+  /** Nodes at which Kirchhoff's current law is written; those that a source joins in one. */
+  nodes: string[][]
 }
 
 /** What a node's voltage is: so many times half the source's, or an unknown by index. */
@@ -40,21 +42,19 @@ export function admittanceRatio(netlist: Netlist, inputName?: string, outputName
   const output = portOf(netlist.outputs, outputName, 'output')
   const passive = netlist.elements.filter((one) => one.kind !== 'opamp')
   const { voltageOf, columns, nodes } = voltagesOf(netlist, input)
-  const [follower] = netlist.controlled ?? []
-  if (follower)
-    throw new ProblemError(
-      'circuit-too-large',
-      `${follower.ref} is a source of finite gain; H(s) in part names is worked out for R, C, L and ideal op-amps.`,
-    )
-  if (passive.length > PARTS_MAX || columns > NODES_MAX)
+  const sources = netlist.controlled ?? []
+  if (passive.length + sources.length > PARTS_MAX || columns > NODES_MAX)
     throw new ProblemError(
       'circuit-too-large',
       `The circuit has ${passive.length} passive parts and ${columns} unknown voltages; in part names at most ${PARTS_MAX} and ${NODES_MAX} are worked out.`,
     )
-  if (nodes.length !== columns) throw singular()
+  if (nodes.length + sources.length !== columns) throw singular()
   // The last column is the right-hand side.
-  const rows = nodes.map((node) => rowOf(node, passive, voltageOf, columns))
-  const order = nodes.map((_, k) => k).sort((a, b) => rows[a]!.size - rows[b]!.size)
+  const rows = [
+    ...nodes.map((group) => currentLaw(group, passive, voltageOf, columns)),
+    ...sources.map((source, k) => sourceLaw(source, 2 ** (passive.length + k), voltageOf, columns)),
+  ]
+  const order = rows.map((_, k) => k).sort((a, b) => rows[a]!.size - rows[b]!.size)
   const minors = new Minors(order.map((k) => rows[k]!))
   const all = 2 ** columns - 1
   const determinant = minors.over(all)
@@ -71,7 +71,7 @@ export function admittanceRatio(netlist: Netlist, inputName?: string, outputName
       numerator = added(numerator, replaced, sign * ((columns - 1 - voltage.column) % 2 ? -1 : 1))
     }
   }
-  return { passive, numerator, denominator: added(new Map(), determinant, 2), nodes }
+  return { passive, numerator, denominator: added(new Map(), determinant, 2), sources, nodes }
 }
 
 const singular = () =>
@@ -113,10 +113,17 @@ function voltagesOf(netlist: Netlist, input: NetPort) {
     if (held.has(a)) parent.set(b, a)
     else parent.set(a, b)
   }
-  const used = netlist.elements.flatMap((one) =>
-    one.kind === 'opamp' ? [one.plus, one.minus, one.out] : [one.a, one.b],
-  )
-  const nodes = [...new Set(used)].filter((node) => !noCurrentLaw.has(node))
+  const sources = netlist.controlled ?? []
+  const used = [
+    ...netlist.elements.flatMap((one) => (one.kind === 'opamp' ? [one.plus, one.minus, one.out] : [one.a, one.b])),
+    ...sources.flatMap(({ a, b, plus, minus }) => [a, b, plus, minus]),
+  ]
+  let groups = [...new Set(used)].map((node) => [node])
+  for (const { a, b } of sources) {
+    const joined = groups.filter((group) => group.includes(a) || group.includes(b))
+    groups = [...groups.filter((group) => !joined.includes(group)), joined.flat()]
+  }
+  const nodes = groups.filter((group) => !group.some((node) => noCurrentLaw.has(node)))
   const columnOf = new Map<string, number>()
   for (const node of used) {
     const at = root(node)
@@ -134,29 +141,51 @@ function voltagesOf(netlist: Netlist, input: NetPort) {
   return { voltageOf, columns: columnOf.size, nodes }
 }
 
-/** Entries of one current law by column, each a sum of single admittances. */
-function rowOf(
-  node: string,
-  passive: AdmittanceRatio['passive'],
+/** Entries of one equation by column, each a sum of single admittances or gains, or a plain number for the bit 0. */
+class Row extends Map<number, AdmittanceSum> {
+  constructor(
+    private readonly voltageOf: (node: string) => Voltage,
+    private readonly columns: number,
+  ) {
+    super()
+  }
+
+  /** Adds sign·(what the bit stands for)·v(node); what is known goes to the right-hand side. */
+  enter(node: string, bit: number, sign: number): void {
+    const voltage = this.voltageOf(node)
+    const [column, value] = 'known' in voltage ? [this.columns, -sign * voltage.known] : [voltage.column, sign]
+    const entry = added(this.get(column) ?? new Map(), new Map([[bit, value]]), 1)
+    if (entry.size) this.set(column, entry)
+    else this.delete(column)
+  }
+}
+
+function currentLaw(
+  group: readonly string[],
+  passive: readonly PassiveElement[],
   voltageOf: (node: string) => Voltage,
   columns: number,
-): Map<number, AdmittanceSum> {
-  const row = new Map<number, Map<number, number>>()
-  const enter = (at: string, bit: number, sign: number) => {
-    const voltage = voltageOf(at)
-    const [column, value] = 'known' in voltage ? [columns, -sign * voltage.known] : [voltage.column, sign]
-    const entry = row.get(column) ?? new Map<number, number>()
-    const total = (entry.get(bit) ?? 0) + value
-    if (total === 0) entry.delete(bit)
-    else entry.set(bit, total)
-    if (entry.size) row.set(column, entry)
-    else row.delete(column)
-  }
-  passive.forEach((one, k) => {
-    if (one.a !== node && one.b !== node) return
-    enter(node, 2 ** k, 1)
-    enter(one.a === node ? one.b : one.a, 2 ** k, -1)
+): Row {
+  const row = new Row(voltageOf, columns)
+  passive.forEach(({ a, b }, k) => {
+    if (group.includes(a) === group.includes(b)) return
+    row.enter(group.includes(a) ? a : b, 2 ** k, 1)
+    row.enter(group.includes(a) ? b : a, 2 ** k, -1)
   })
+  return row
+}
+
+function sourceLaw(
+  { a, b, plus, minus }: ControlledSource,
+  bit: number,
+  voltageOf: (node: string) => Voltage,
+  columns: number,
+): Row {
+  const row = new Row(voltageOf, columns)
+  row.enter(a, 0, 1)
+  row.enter(b, 0, -1)
+  row.enter(plus, bit, -1)
+  row.enter(minus, bit, 1)
   return row
 }
 

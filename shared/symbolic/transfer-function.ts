@@ -4,6 +4,7 @@ import type { PassiveKind } from '../circuit/part'
 import type { Complex } from '../numerics/complex'
 import { divide } from '../numerics/polynomial'
 import { greatestCommonDivisor } from './common-factor'
+import { exactNumber } from './exact-ratio'
 import { nodalEquations, portVoltage } from './nodal-equations'
 import type { AdmittanceRatio, AdmittanceSum } from './nodal-minors'
 import { admittanceRatio } from './nodal-minors'
@@ -35,7 +36,7 @@ export interface SymbolicAsked {
 
 /**
  * H(s) of a circuit with ideal op-amps in its own part names, exact: voltage at an output over that at an input, the
- * other inputs at 0 V, a pair driven in balance.
+ * other inputs at 0 V, a pair driven in balance. The gain of a controlled source stands as its number.
  *
  * @throws {ProblemError} 'circuit-singular' naming the node or part; 'circuit-too-large' beyond 30 passive parts, 24
  *   unknown voltages or 2000 terms, within bounded time; 'output-unknown'
@@ -50,7 +51,7 @@ export function symbolicTransferFunction(netlist: Netlist, asked: SymbolicAsked 
   const ratio = admittanceRatio(netlist, asked.input, asked.output)
   const { variables, kinds } = variablesFor(ratio.passive, nameOf)
   const index = ratio.passive.map((one) => variables.indexOf(nameOf(one.ref)))
-  const [above, below] = [ratio.numerator, ratio.denominator].map((sum) => clearedOf(sum, ratio.passive, index)) as [
+  const [above, below] = [ratio.numerator, ratio.denominator].map((sum) => clearedOf(sum, ratio, index)) as [
     Polynomial,
     Polynomial,
   ]
@@ -104,8 +105,9 @@ function compareNames(a: string, b: string): number {
   return headA < headB ? -1 : headA > headB ? 1 : Number(tailA) - Number(tailB)
 }
 
-/** Multiplied through by every resistance and s·inductance: no part is left under a bar. */
-function clearedOf(sum: AdmittanceSum, passive: AdmittanceRatio['passive'], index: readonly number[]): Polynomial {
+/** Multiplied through by every resistance and s·inductance: no part is left under a bar. Gains are put in exactly. */
+function clearedOf(sum: AdmittanceSum, { passive, sources }: AdmittanceRatio, index: readonly number[]): Polynomial {
+  const gains = sources.map(({ gain }) => exactGain(gain))
   const terms = new Map<bigint, bigint>()
   for (const [set, coefficient] of sum) {
     let monomial = 0n
@@ -114,8 +116,19 @@ function clearedOf(sum: AdmittanceSum, passive: AdmittanceRatio['passive'], inde
       if (kind === 'capacitor' ? inside : !inside) monomial += powerOf(index[k]!)
       if (kind === 'capacitor' ? inside : kind === 'inductor' && !inside) monomial += powerOf(0)
     })
-    terms.set(monomial, (terms.get(monomial) ?? 0n) + BigInt(coefficient))
+    const factor = gains.reduce(
+      (product, [above, below], k) => product * ((set >>> (passive.length + k)) & 1 ? above : below),
+      BigInt(coefficient),
+    )
+    terms.set(monomial, (terms.get(monomial) ?? 0n) + factor)
   }
   // Parts that share a name may cancel.
   return addScaled(ZERO, terms)
+}
+
+/** A gain as numerator and denominator of the decimal that it is written as. */
+function exactGain(gain: number): [bigint, bigint] {
+  const { above, below } = exactNumber(Math.abs(gain))
+  const size = above.get(0n) ?? 0n
+  return [gain < 0 ? -size : size, below.get(0n)!]
 }

@@ -171,10 +171,21 @@ describe('circuits of every kind', () => {
       expect(katex.renderToString(one, { throwOnError: true, strict: 'error' })).toContain('katex')
   })
 
-  it('refuses a source of finite gain by its name', () => {
-    const controlled = [{ ref: 'E7', a: 'out', b: '0', plus: 'a', minus: '0', gain: 2 }]
-    const netlist = { ...netlistOf(['R1 in a', 'C1 a 0', 'R2 out 0']), controlled }
-    expect(() => symbolicTransferFunction(netlist)).toThrow(/E7 is a source of finite gain/)
+  // Wanted: dividers by hand; the second section sees the source of gain 2.5, the third floats between its nodes.
+  it.each([
+    [['R1 in a', 'C1 a 0', 'R2 out 0'], { a: 'out', b: '0', plus: 'a', minus: '0', gain: 2.5 }, '5/(2*(1 + s*R1*C1))'],
+    [['R1 in a', 'C1 a 0', 'R2 out 0'], { a: 'out', b: '0', plus: '0', minus: 'a', gain: 1 }, '-1/(1 + s*R1*C1)'],
+    [['R1 in a', 'R2 out 0'], { a: 'out', b: 'a', plus: 'in', minus: 'a', gain: 1 }, '1'],
+    [['R1 in a', 'R2 out 0'], { a: 'a', b: 'out', plus: 'in', minus: '0', gain: 3 }, '-2*R2/(R1 + R2)'],
+  ])('puts the gain of a source in: %j %j', (cards, source, text) => {
+    const netlist = { ...netlistOf(cards), controlled: [{ ref: 'E7', ...source }] }
+    const h = symbolicTransferFunction(netlist)
+    expect(h.text).toBe(text)
+    const values = randomValues(passiveRefs(netlist), seededRandom(5))
+    const s = { re: 0.2, im: 1 }
+    expect(gap(symbolicAt(h, values, s), responseAt(prepareCircuit(netlist), values, s))).toBeLessThan(1e-12)
+    for (const one of h.equations)
+      expect(katex.renderToString(one, { throwOnError: true, strict: 'error' })).toContain('katex')
   })
 
   it('names the outputs there are', () => {
@@ -204,6 +215,11 @@ describe('random circuits of up to three op-amps and ten passive parts', () => {
     let slowest = 0
     for (let k = 0; k < 1500; k++) {
       const netlist = netlistOf(randomCards(random))
+      if (k % 4 === 0) {
+        const [a, b, plus, minus] = [0, 0, 0, 0].map(() => NODES[Math.floor(random() * NODES.length)]!)
+        const gain = Math.round(40 * random() - 20) / 8
+        if (a !== b) netlist.controlled = [{ ref: 'E9', a: a!, b: b!, plus: plus!, minus: minus!, gain }]
+      }
       const values = randomValues(passiveRefs(netlist), random)
       const points = [0.3, 1, 3].map((im) => ({ re: 0.2, im }))
       let wanted
