@@ -43,6 +43,26 @@ export function plotFrequencies(stage: Stage, values: PartValues, count = PLOT_P
   return Array.from(logFrequencies(fromHz, Math.max(toHz, fromHz * 10), count))
 }
 
+/** Points of a curve that is drawn anew with each key; more stand around sharp pole pairs. */
+const CURVE_POINTS = 121
+const AROUND = [-1, -0.6, -0.3, -0.15, 0, 0.15, 0.3, 0.6, 1]
+
+/**
+ * Frequencies of a curve over a range, Hz, ascending: evenly spaced in their logarithm, and closer around pole pairs
+ * whose peak would fall between two of them.
+ */
+export function curveFrequencies(stage: Stage, values: PartValues, fromHz: number, toHz: number): number[] {
+  const even = Array.from(logFrequencies(fromHz, toHz, CURVE_POINTS))
+  const { poles } = circuitFigures(stage, values, {}).rational(stage.plot.output)
+  const close = poles.flatMap(({ re, im }) => {
+    const size = Math.hypot(re, im)
+    const halfWidth = Math.abs(re) / size
+    return im > 0 && halfWidth < 0.3 ? AROUND.map((k) => (size / (2 * Math.PI)) * (1 + 2 * k * halfWidth)) : []
+  })
+  if (close.length === 0) return even
+  return [...even, ...close.filter((f) => f > fromHz && f < toHz)].sort((a, b) => a - b)
+}
+
 /** Frequency that a stage is about, Hz: its corner or centre result, else the middle of its poles and zeros. */
 export function centreHz(stage: Stage, values: PartValues): number {
   const figures = circuitFigures(stage, values, {})

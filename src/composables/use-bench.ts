@@ -4,11 +4,10 @@ import type { Conditions } from '#shared/contracts/conditions'
 import type { SeriesName } from '#shared/preferred-values/series'
 import { ProblemError } from '#shared/problems'
 import {
+  curveFrequencies,
   defaultValues,
   evaluateStage,
-  logFrequencies,
   nothingAsked,
-  PLOT_POINTS,
   plotFrequencies,
   selfCheck,
   stagePhase,
@@ -82,7 +81,7 @@ export function useBench(stage: Stage, start: BenchState = emptyState()) {
     const { conditions, output } = asked.value
     const fromHz = Math.min(wantedRange.value[0], shownRange.value[0])
     const toHz = Math.max(wantedRange.value[1], shownRange.value[1])
-    const frequenciesHz = Array.from(logFrequencies(fromHz, toHz, PLOT_POINTS))
+    const frequenciesHz = curveFrequencies(stage, at, fromHz, toHz)
     const { re, im } = stageResponse(stage, at, conditions, output, frequenciesHz)
     return {
       frequenciesHz,
