@@ -91,7 +91,7 @@ export function jacobi(u: number, { k, complement }: Modulus): JacobiValues {
  *
  * @param discrimination k₁
  * @param order n, ≥ 1
- * Source: S. J. Orfanidis, Lecture Notes on Elliptic Filter Design (2006); Abramowitz & Stegun (1964), 16.27, from memory.
+ * Source: S. J. Orfanidis, notes on elliptic filter design (2006); Abramowitz & Stegun (1964), 16.27, from memory.
  */
 export function modulusByDegree(discrimination: Modulus, order: number): Modulus {
   const ratio = quarterPeriod(complementary(discrimination)) / quarterPeriod(discrimination) / order

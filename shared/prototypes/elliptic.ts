@@ -22,8 +22,8 @@ import { withConjugates, withDcGain, type ZeroPoleGain } from './zero-pole-gain'
  * @param stopDb least loss in the stop band, dB, > rippleDb; reached at 1/k rad/s
  * @returns poles j cd((u_i − j v₀) K, k), zeros ±j/(k cd(u_i K, k)), u_i = (2i − 1)/n, sc(v₀ n K₁, k₁′) = 1/ε
  * @example elliptic(2, 1, 40).zeros[0].im // 9.9376
- * Source: W. Cauer, Synthesis of Linear Communication Networks (1958); S. J. Orfanidis, Lecture Notes on Elliptic Filter
- * Design (2006), from memory.
+ * Source: W. Cauer, Synthesis of Linear Communication Networks (1958); S. J. Orfanidis, notes on elliptic filter
+ * design (2006), from memory.
  */
 export function elliptic(order: number, rippleDb: number, stopDb: number): ZeroPoleGain {
   const epsilon = rippleFactor(rippleDb)
